@@ -1,24 +1,16 @@
 /** The words and shapes of a failure-mode statement. The rule itself is in failureMode.ts. */
 
+import type { PredictedPlane, PredictedPlaneName, SurfaceStress } from '../mechanics/stressState.ts';
+
 export type FailureMode =
-  | 'shear-transverse' | 'shear-longitudinal' | 'normal-stress' | 'mixed' | 'indeterminate' | 'not-attributable';
+  | 'shear-transverse'
+  | 'shear-longitudinal'
+  | 'normal-stress'
+  | 'mixed'
+  | 'indeterminate'
+  | 'not-attributable';
 
-/** The predicted planes that the cells of the decision rule belong to. */
-export type PredictedPlaneName = 'tension' | 'compression' | 'shear-transverse' | 'shear-longitudinal';
-
-/** Stress at the surface point looked at, MPa; tension positive, tau signed like the torque. */
-export interface SurfaceStress {
-  readonly sigmaXMPa: number;
-  readonly sigmaYMPa: number;
-  readonly tauMPa: number;
-}
-
-export interface PredictedPlane {
-  readonly plane: PredictedPlaneName;
-  readonly planeAngleDeg: number;
-  readonly normalStressMPa: number;
-  readonly shearStressMPa: number;
-}
+export type { PredictedPlane, PredictedPlaneName, SurfaceStress };
 
 export interface DecisionRule {
   /** A mode is stated when its probability reaches this; 0.5 to 1. */
@@ -58,7 +50,11 @@ export interface FailureModeStatement {
   readonly comparedQuantity: 'planeAngle' | 'planeTilt';
   readonly comparedDeg: number;
   readonly comparedExpandedUncertaintyDeg: number;
-  readonly nearestPlane: { readonly plane: PredictedPlaneName; readonly planeAngleDeg: number; readonly distanceDeg: number };
+  readonly nearestPlane: {
+    readonly plane: PredictedPlaneName;
+    readonly planeAngleDeg: number;
+    readonly distanceDeg: number;
+  };
   readonly rule: DecisionRule;
   /** The rule in words, printed on every result. */
   readonly ruleText: string;

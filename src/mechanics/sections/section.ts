@@ -1,0 +1,20 @@
+/**
+ * What the mechanics need to know about a cross-section, computed from its dimensions.
+ * One file a section gives these from its geometry; `registry.ts` lists them.
+ */
+export interface SectionProperties {
+  /** Area of the cross-section, mm². */
+  readonly areaMm2: number;
+  /** Torsion constant K of φ = T L / (G K), mm⁴; the polar second moment of area J for round sections. */
+  readonly torsionConstantMm4: number;
+  /** Elastic torsion section modulus W of τ = T / W at the point of largest shear stress, mm³. */
+  readonly torsionSectionModulusMm3: number;
+  /** Plastic torsion modulus W_p of T_p = τ_y W_p when the whole section has yielded, mm³. */
+  readonly plasticTorsionModulusMm3: number;
+  /** Lever ρ of the surface shear strain γ = ρ φ / L, mm: the outer radius of a round section. */
+  readonly shearStrainLeverMm: number;
+  /** Elastic bending section modulus of σ = M / W_b at the outermost fibre, mm³. */
+  readonly bendingSectionModulusMm3: number;
+  /** Where the largest shear stress sits, in words. */
+  readonly largestShearAt: string;
+}
