@@ -32,6 +32,8 @@ export interface SpecimenFrame {
   readonly taper: number;
   /** Distance of the camera from the axis in radii, > 2; Infinity for a parallel view. */
   readonly cameraDistanceRadii: number;
+  /** Where along the axis the camera stands (the middle of the photo), radii from the origin. */
+  readonly cameraAlongRadii: number;
 }
 
 /** Frame from two axis points and the diameter in px. @throws RangeError when the points coincide or the diameter is not > 0. */
@@ -39,18 +41,23 @@ export function frameFromAxis(
   from: PhotoPoint,
   to: PhotoPoint,
   diameterPx: number,
-  options: { readonly taper?: number; readonly cameraDistanceRadii?: number } = {},
+  options: { readonly taper?: number; readonly cameraDistanceRadii?: number; readonly photoMiddlePx?: PhotoPoint } = {},
 ): SpecimenFrame {
   const length = Math.hypot(to.xPx - from.xPx, to.yPx - from.yPx);
   if (!(length > 0)) throw new RangeError('the two axis points must be apart from each other');
   if (!(diameterPx > 0)) throw new RangeError(`diameterPx must be > 0, got ${diameterPx}`);
+  const originPx = { xPx: (from.xPx + to.xPx) / 2, yPx: (from.yPx + to.yPx) / 2 };
+  const alongX = (to.xPx - from.xPx) / length;
+  const alongY = (to.yPx - from.yPx) / length;
+  const middle = options.photoMiddlePx ?? originPx;
   return {
-    originPx: { xPx: (from.xPx + to.xPx) / 2, yPx: (from.yPx + to.yPx) / 2 },
-    alongX: (to.xPx - from.xPx) / length,
-    alongY: (to.yPx - from.yPx) / length,
+    originPx,
+    alongX,
+    alongY,
     radiusPx: diameterPx / 2,
     taper: options.taper ?? 0,
     cameraDistanceRadii: options.cameraDistanceRadii ?? Number.POSITIVE_INFINITY,
+    cameraAlongRadii: ((middle.xPx - originPx.xPx) * alongX + (middle.yPx - originPx.yPx) * alongY) / (diameterPx / 2),
   };
 }
 
@@ -76,6 +83,15 @@ export function azimuthOfHeight(height: number, cameraDistanceRadii: number): nu
   return Math.asin(Math.max(-1, Math.min(1, argument))) - Math.atan2(clamped, q);
 }
 
+/**
+ * How much larger than the axis the camera sees the surface at φ: k/(k − cos φ), since it is nearer by r·cos φ.
+ * Lengths along the axis are drawn out by it from the point the camera stands above.
+ */
+function magnification(phi: number, cameraDistanceRadii: number): number {
+  if (!Number.isFinite(cameraDistanceRadii)) return 1;
+  return cameraDistanceRadii / (cameraDistanceRadii - Math.cos(phi));
+}
+
 /** Photo point → unrolled surface. Points outside the edges land on the edge. */
 export function toSurface(frame: SpecimenFrame, point: PhotoPoint): SurfacePoint {
   const dx = point.xPx - frame.originPx.xPx;
@@ -83,12 +99,15 @@ export function toSurface(frame: SpecimenFrame, point: PhotoPoint): SurfacePoint
   const alongPx = dx * frame.alongX + dy * frame.alongY;
   const upPx = dx * frame.alongY - dy * frame.alongX;
   const radiusPx = frame.radiusPx + frame.taper * alongPx;
-  return { x: alongPx / frame.radiusPx, phi: azimuthOfHeight(upPx / radiusPx, frame.cameraDistanceRadii) };
+  const phi = azimuthOfHeight(upPx / radiusPx, frame.cameraDistanceRadii);
+  const seen = alongPx / frame.radiusPx - frame.cameraAlongRadii;
+  return { x: frame.cameraAlongRadii + seen / magnification(phi, frame.cameraDistanceRadii), phi };
 }
 
 /** Unrolled surface → photo point. */
 export function toPhoto(frame: SpecimenFrame, point: SurfacePoint): PhotoPoint {
-  const alongPx = point.x * frame.radiusPx;
+  const seen = (point.x - frame.cameraAlongRadii) * magnification(point.phi, frame.cameraDistanceRadii);
+  const alongPx = (frame.cameraAlongRadii + seen) * frame.radiusPx;
   const upPx = heightOfAzimuth(point.phi, frame.cameraDistanceRadii) * (frame.radiusPx + frame.taper * alongPx);
   return {
     xPx: frame.originPx.xPx + alongPx * frame.alongX + upPx * frame.alongY,

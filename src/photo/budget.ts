@@ -1,0 +1,123 @@
+import { degToRad, planeAngleDistanceDeg, radToDeg } from '../angle.ts';
+import type { BudgetLine } from '../records/reading.ts';
+import { type CameraBow, fitTrace, type TraceFit } from './traceFit.ts';
+import { type PhotoPoint, type SpecimenFrame, toSurface } from './unroll.ts';
+
+/** Camera distance assumed when nothing tells it: "a good ten diameters" (design 3b), in radii, ± 40 %. */
+export const USUAL_CAMERA_DISTANCE_RADII = 25;
+const CAMERA_DISTANCE_RELATIVE_U = 0.4;
+
+/** How well the frame is known, standard uncertainties. */
+export interface FrameUncertainty {
+  readonly axisDeg: number;
+  /** Of the radius, relative. */
+  readonly radiusRelative: number;
+  /** Of the middle line, in radii. */
+  readonly centreRadii: number;
+  /** Of the taper, px per px. Infinity when the taper was not measured. */
+  readonly taper: number;
+}
+
+export interface TraceMeasurement {
+  readonly fit: TraceFit;
+  readonly budget: readonly BudgetLine[];
+  readonly combinedStandardUncertaintyDeg: number;
+}
+
+/**
+ * What the camera adds to the even part of the trace (x = … + B·cos φ), in radii: a camera out of square by τ
+ * moves the middle of the face by r·sin τ. (The view from the side of a break away from the middle of the photo is
+ * in the unrolling already; here only what the unknown distance leaves of it.) The measured taper tells τ, since the radius on the photo falls as 1/distance: taper = −sin τ / k.
+ * The tilt stated for the set-up (default ± 3°, k = 2) is the prior.
+ * @param offsetRadii position of the break from the middle of the photo along the axis, radii
+ */
+export function cameraBow(
+  frame: SpecimenFrame,
+  taperUncertainty: number,
+  offsetRadii: number,
+  tiltStandardUncertaintyDeg: number,
+): CameraBow {
+  const k = Number.isFinite(frame.cameraDistanceRadii) ? frame.cameraDistanceRadii : USUAL_CAMERA_DISTANCE_RADII;
+  const prior = Math.sin(degToRad(tiltStandardUncertaintyDeg));
+  const fromTaper = -frame.taper * k;
+  const uTaper = Math.hypot(k * taperUncertainty, CAMERA_DISTANCE_RELATIVE_U * fromTaper, 0.01);
+  const weight = Number.isFinite(uTaper) ? 1 / (uTaper * uTaper) : 0;
+  const total = weight + 1 / (prior * prior);
+  const side = offsetRadii / k;
+  return {
+    mean: (weight * fromTaper) / total,
+    sigma: Math.hypot(1 / Math.sqrt(total), CAMERA_DISTANCE_RELATIVE_U * side),
+  };
+}
+
+/**
+ * Fits the trace and draws up the budget of its plane angle (GUM 5.1): every input is moved by its standard
+ * uncertainty, the fit repeated, and the change of the angle taken as that input's contribution.
+ */
+export function measureTrace(input: {
+  readonly frame: SpecimenFrame;
+  readonly frameUncertainty: FrameUncertainty;
+  readonly tracePx: readonly PhotoPoint[];
+  readonly cameraTiltStandardUncertaintyDeg: number;
+  readonly independentLimit?: number;
+  /** Standard uncertainty of one trace point across the trace, px. */
+  readonly pointUncertaintyPx: number;
+}): TraceMeasurement | null {
+  const { frame, frameUncertainty: u, tracePx } = input;
+  const fitWith = (f: SpecimenFrame, bowShift = 0): TraceFit | null => {
+    const surface = tracePx.map((p) => toSurface(f, p));
+    const middle = surface.reduce((sum, p) => sum + p.x, 0) / Math.max(1, surface.length);
+    const offset = middle - f.cameraAlongRadii;
+    const bow = cameraBow(f, u.taper, offset, input.cameraTiltStandardUncertaintyDeg);
+    return fitTrace(surface, { mean: bow.mean + bowShift, sigma: bow.sigma }, input.independentLimit);
+  };
+  const fit = fitWith(frame);
+  if (fit === null) return null;
+  const change = (other: TraceFit | null): number =>
+    other === null || other.shape !== fit.shape ? 0 : planeAngleDistanceDeg(other.planeAngleDeg, fit.planeAngleDeg);
+  const larger = (a: SpecimenFrame, b: SpecimenFrame) => Math.max(change(fitWith(a)), change(fitWith(b)));
+
+  const turned = (deg: number): SpecimenFrame => {
+    const t = degToRad(deg);
+    return {
+      ...frame,
+      alongX: frame.alongX * Math.cos(t) - frame.alongY * Math.sin(t),
+      alongY: frame.alongX * Math.sin(t) + frame.alongY * Math.cos(t),
+    };
+  };
+  const scaled = (factor: number): SpecimenFrame => ({ ...frame, radiusPx: frame.radiusPx * factor });
+  const shifted = (radii: number): SpecimenFrame => ({
+    ...frame,
+    originPx: {
+      xPx: frame.originPx.xPx + radii * frame.radiusPx * frame.alongY,
+      yPx: frame.originPx.yPx - radii * frame.radiusPx * frame.alongX,
+    },
+  });
+  const k = frame.cameraDistanceRadii;
+  const distance = Number.isFinite(k)
+    ? larger({ ...frame, cameraDistanceRadii: k * (1 + CAMERA_DISTANCE_RELATIVE_U) }, { ...frame, cameraDistanceRadii: Math.max(4, k / (1 + CAMERA_DISTANCE_RELATIVE_U)) })
+    : change(fitWith({ ...frame, cameraDistanceRadii: USUAL_CAMERA_DISTANCE_RADII }));
+
+  const tangent = Math.abs(Math.tan(degToRad(Math.min(89, Math.abs(fit.planeAngleDeg)))));
+  const tilt = Math.sin(degToRad(input.cameraTiltStandardUncertaintyDeg)) ** 2 / 2;
+  const foreshortening = radToDeg((tangent * tilt) / (1 + tangent * tangent));
+  const traceRadii = Math.max(0.3, 2 * Math.sin(Math.PI / 3) / Math.max(0.1, Math.cos(degToRad(fit.planeAngleDeg))));
+  const sampling = radToDeg((input.pointUncertaintyPx / frame.radiusPx) * (Math.sqrt(12) / traceRadii)) / Math.sqrt(Math.max(2, fit.independentPoints));
+
+  const budget: BudgetLine[] = [
+    line('trace-roughness', fit.roughnessUncertaintyDeg, 'A', 'scatter of the trace about the fit, correlated points counted once'),
+    line('axis-direction', larger(turned(u.axisDeg), turned(-u.axisDeg)), 'A', `axis known to ${u.axisDeg.toFixed(2)}°`),
+    line('radius', larger(scaled(1 + u.radiusRelative), scaled(1 - u.radiusRelative)), 'A', `radius known to ${(100 * u.radiusRelative).toFixed(1)} %`),
+    line('centre', larger(shifted(u.centreRadii), shifted(-u.centreRadii)), 'A', `middle line known to ${(100 * u.centreRadii).toFixed(1)} % of the radius`),
+    line('camera-tilt', foreshortening, 'B', `camera out of square by ${input.cameraTiltStandardUncertaintyDeg}° (standard uncertainty)`),
+    line('camera-distance', distance, 'B', 'camera about ten diameters away or more, perspective of the visible face'),
+    line('pixel-sampling', sampling, 'B', `a trace point is placed to ${input.pointUncertaintyPx.toFixed(2)} px`),
+    line('model-choice', fit.modelUncertaintyDeg, 'B', 'difference between shapes that fit about as well'),
+  ];
+  const combined = Math.sqrt(budget.reduce((sum, b) => sum + b.standardUncertaintyDeg ** 2, 0));
+  return { fit, budget, combinedStandardUncertaintyDeg: combined };
+}
+
+function line(component: string, standardUncertaintyDeg: number, evaluation: 'A' | 'B', explanation: string): BudgetLine {
+  return { component, standardUncertaintyDeg: Number.isFinite(standardUncertaintyDeg) ? standardUncertaintyDeg : 0, evaluation, explanation };
+}
