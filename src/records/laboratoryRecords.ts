@@ -23,6 +23,22 @@ export interface ListQuery {
 
 export type StoreOutcome = 'stored' | 'updated' | 'unchanged';
 
+/** A reading as it is handed to the store. */
+export type NewReading = Omit<Reading, 'id' | 'createdAt'>;
+
+/** One row of a test log, ready to be kept. */
+export interface LogEntry {
+  readonly test: TestInput;
+  /** The angle the log states; added unless the test already has the same one (method, result and instrument equal). */
+  readonly reading: Omit<NewReading, 'testId'> | null;
+}
+
+export interface KeptLogEntry {
+  readonly outcome: StoreOutcome;
+  readonly testId: string;
+  readonly readingAdded: boolean;
+}
+
 /**
  * What the laboratory keeps: the port between the domain and the store. Every call is atomic:
  * it happened whole, or not at all.
@@ -36,6 +52,11 @@ export interface LaboratoryRecords {
   listTests(query: ListQuery): Promise<{ tests: Test[]; nextCursor: string | null; total: number }>;
   /** Stores by identity (specimen id + test date): new, changed, or nothing to do. */
   upsertTest(input: TestInput): Promise<{ outcome: StoreOutcome; test: Test }>;
+  /**
+   * `upsertTest` and `addReading` for many rows of a log in one transaction; results in the order given. A field the log
+   * leaves empty (null) keeps what is stored. `dryRun`: the same answer, nothing kept.
+   */
+  upsertLogEntries?(entries: readonly LogEntry[], options?: { readonly dryRun?: boolean }): Promise<KeptLogEntry[]>;
   addReading(reading: Omit<Reading, 'id' | 'createdAt'>): Promise<Reading>;
   readingsOf(testId: string): Promise<Reading[]>;
   addPhoto(photo: Omit<Photo, 'addedAt'>, temporaryPath: string): Promise<Photo>;

@@ -64,8 +64,17 @@ export type PhotoMeasured = z.infer<typeof PhotoMeasured>;
 
 /** `reason.code` is one of the stable codes; it is a laboratory result and is recorded. */
 export const NOT_MEASURED_CODES = [
-  'no-specimen', 'no-fracture', 'fracture-cut-off', 'too-blurred', 'too-small', 'too-dark', 'over-exposed',
-  'ambiguous', 'not-a-photo', 'too-many-pixels', 'fault',
+  'no-specimen',
+  'no-fracture',
+  'fracture-cut-off',
+  'too-blurred',
+  'too-small',
+  'too-dark',
+  'over-exposed',
+  'ambiguous',
+  'not-a-photo',
+  'too-many-pixels',
+  'fault',
 ] as const;
 export const PhotoNotMeasured = z.object({
   outcome: z.literal('not-measured'),

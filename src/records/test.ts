@@ -15,7 +15,11 @@ export const TestInput = z.object({
   geometry: SectionGeometry,
   gaugeLengthMm: z.number().positive().max(100_000).nullable().default(null),
   torqueMaxNm: z
-    .number().positive().max(10_000_000).nullable().default(null)
+    .number()
+    .positive()
+    .max(10_000_000)
+    .nullable()
+    .default(null)
     .describe('largest torque recorded, N·m, magnitude; null when no torque is known'),
   torqueDirection: TorqueDirection.nullable().default(null).describe('as seen facing the driven end'),
   twistFractureDeg: z.number().nonnegative().max(36_000_000).nullable().default(null),
