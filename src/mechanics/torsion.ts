@@ -1,4 +1,4 @@
-import { degToRad } from '../angle.ts';
+import { degToRad, radToDeg } from '../angle.ts';
 import type { SectionGeometry } from '../records/geometry.ts';
 import { requireFinite, requirePositive } from './requirePositive.ts';
 import { sectionProperties } from './sections/registry.ts';
@@ -32,4 +32,21 @@ export function surfaceShearStrain(geometry: SectionGeometry, twistDeg: number, 
   requireFinite('twistDeg', twistDeg, 'degrees');
   requirePositive('gaugeLengthMm', gaugeLengthMm, 'mm');
   return (sectionProperties(geometry).shearStrainLeverMm * degToRad(twistDeg)) / gaugeLengthMm;
+}
+
+/**
+ * Elastic angle of twist φ = T L/(G K), degrees, signed like the torque.
+ * @param shearModulusMPa G, MPa, > 0
+ */
+export function elasticTwistDeg(
+  geometry: SectionGeometry,
+  torqueNm: number,
+  gaugeLengthMm: number,
+  shearModulusMPa: number,
+): number {
+  requireFinite('torqueNm', torqueNm, 'N·m');
+  requirePositive('gaugeLengthMm', gaugeLengthMm, 'mm');
+  requirePositive('shearModulusMPa', shearModulusMPa, 'MPa');
+  const stiffnessNmm2 = shearModulusMPa * sectionProperties(geometry).torsionConstantMm4;
+  return radToDeg((torqueNm * NMM_PER_NM * gaugeLengthMm) / stiffnessNmm2);
 }
