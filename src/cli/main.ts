@@ -1,5 +1,6 @@
 import { Command, CommanderError } from 'commander';
 import { LabError } from '../errors.ts';
+import { classifyCommand } from './commands/classify.ts';
 import { measureCommand } from './commands/measure.ts';
 import { serveCommand } from './commands/serve.ts';
 import type { CommandContext } from './context.ts';
@@ -7,14 +8,14 @@ import { EXIT } from './exitStatus.ts';
 import { openOutput, showsColours } from './output.ts';
 import type { CliPorts } from './ports.ts';
 
-const COMMANDS = [measureCommand, serveCommand];
+const COMMANDS = [measureCommand, classifyCommand, serveCommand];
 
 function buildProgram(context: CommandContext): Command {
   const { ports } = context;
   const program = new Command('breakplane')
     .description(
-      'Measures the fracture plane of torsion specimens, predicts the planes of largest shear and normal stress\n' +
-        'and states the failure mode with its uncertainty.',
+      'Measures the plane of the break on torsion specimens, predicts the planes of largest shear and normal ' +
+        'stress, and states the failure mode with its uncertainty.',
     )
     .version(ports.version)
     .exitOverride()

@@ -2,14 +2,13 @@ import { mkdir } from 'node:fs/promises';
 import { Command } from 'commander';
 import { LabError } from '../../errors.ts';
 import type { MeasureJob } from '../../photo/measurement.ts';
-import { parseQuantity } from '../../units.ts';
 import { type ByHandTexts, byHandOptions } from '../byHand.ts';
 import type { CommandContext } from '../context.ts';
 import { EXIT } from '../exitStatus.ts';
 import { type MeasuredPhoto, measureInOrder } from '../measureInOrder.ts';
 import { measurementLines } from '../measurementText.ts';
 import { showProgress } from '../progress.ts';
-import { torqueDirectionOf, wholeNumber } from './options.ts';
+import { quantityOf, roundGeometryOf, torqueDirectionOf, wholeNumber } from './options.ts';
 
 interface MeasureFlags extends ByHandTexts {
   readonly diameter?: string;
@@ -29,25 +28,17 @@ Examples:
 One photo, one line, in the order given; a photo that cannot be measured gets its line with the reason.
 Exit status: 0 every photo was measured, 3 at least one was not, 2 wrong usage.`;
 
-function jobOptions(photos: readonly string[], flags: MeasureFlags): NonNullable<MeasureJob['options']> {
+type JobOptions = NonNullable<MeasureJob['options']>;
+
+function jobOptions(photos: readonly string[], flags: MeasureFlags, diameterMm: number | null): JobOptions {
   const byHand = byHandOptions(flags);
   if (byHand && photos.length !== 1) {
     throw new LabError('usage', `--axis and --trace belong to exactly one photo, got ${photos.length} photos`, {
       input: 'axis',
     });
   }
-  const diameterMm =
-    flags.diameter === undefined
-      ? undefined
-      : parseQuantity(flags.diameter, 'length', { input: '--diameter', defaultUnit: 'mm' });
-  if (diameterMm !== undefined && !(diameterMm > 0)) {
-    throw new LabError('out-of-range', `diameter must be > 0 mm, got ${diameterMm} mm`, {
-      input: '--diameter',
-      value: flags.diameter,
-    });
-  }
   return {
-    ...(diameterMm !== undefined && { diameterMm }),
+    ...(diameterMm !== null && { diameterMm }),
     ...(byHand && { byHand }),
     ...(flags.debug !== undefined && { debugDirectory: flags.debug }),
   };
@@ -69,8 +60,11 @@ export function measureCommand(context: CommandContext): Command {
     .option('--json', 'one JSON object a line')
     .addHelpText('after', EXAMPLES)
     .action(async (photos: string[], flags: MeasureFlags) => {
-      const options = jobOptions(photos, flags);
-      torqueDirectionOf(flags.torqueDirection);
+      const torqueDirection = torqueDirectionOf(flags.torqueDirection);
+      const diameterMm = quantityOf('--diameter', flags.diameter, 'length');
+      const geometry = roundGeometryOf(diameterMm, null);
+      const loads = torqueDirection || geometry ? { torqueDirection, geometry } : null;
+      const options = jobOptions(photos, flags, diameterMm);
       const size = flags.workers === undefined ? undefined : wholeNumber('--workers', flags.workers, 1, 64);
       if (flags.debug !== undefined) await mkdir(flags.debug, { recursive: true });
       const pool = ports.createMeasurePool(size === undefined ? {} : { size });
@@ -79,7 +73,7 @@ export function measureCommand(context: CommandContext): Command {
         if (photo.measurement.outcome === 'not-measured') context.status = EXIT.partly;
         progress.pauseFor(() => {
           if (flags.json) output.line(JSON.stringify({ file: photo.file, ...photo.measurement }));
-          else for (const line of measurementLines(photo, output.colours)) output.line(line);
+          else for (const line of measurementLines(photo, loads, output.colours)) output.line(line);
         });
       };
       try {
