@@ -1,0 +1,170 @@
+import { type AlignedCells, bandColour } from './alignedCells.ts';
+import type { AlignedEdge } from './parallelEdges.ts';
+
+/** Two nearly parallel edges that may be the two sides of a specimen. Positions in px of the detection picture. */
+export interface SpecimenPair {
+  readonly upper: AlignedEdge;
+  readonly lower: AlignedEdge;
+  readonly fromCell: number;
+  readonly toCell: number;
+  readonly widthPx: number;
+  /** Larger is better; see {@link scorePair}. */
+  readonly score: number;
+  /** The parts of the score, for explanation. */
+  readonly terms: Readonly<Record<string, number>>;
+}
+
+const MINIMUM_WIDTH_PX = 9;
+
+/**
+ * All pairs of edges that could bound a specimen, best first.
+ *
+ * What speaks for a pair: both edges strong along the same stretch; outside of both the same background (a
+ * shadow is the background's hue, only darker); inside different from outside on both sides. What speaks
+ * against: an inner edge beyond which the pair holds only darkened background (specimen and its shadow taken
+ * together), outsides of different hue (half a specimen up to its highlight).
+ */
+export function findPairs(grid: AlignedCells, edges: readonly AlignedEdge[], most: number): SpecimenPair[] {
+  const pairs: SpecimenPair[] = [];
+  for (let i = 0; i < edges.length; i++) {
+    for (let j = 0; j < edges.length; j++) {
+      if (i === j) continue;
+      const upper = edges[i] as AlignedEdge;
+      const lower = edges[j] as AlignedEdge;
+      const fromCell = Math.max(upper.fromCell, lower.fromCell);
+      const toCell = Math.min(upper.toCell, lower.toCell);
+      if (toCell - fromCell < 2) continue;
+      const at = (cell: number) => grid.firstAlong + cell * grid.cellPx;
+      const width = (cell: number) => upper.across - lower.across + (upper.slope - lower.slope) * at(cell);
+      const w0 = width(fromCell);
+      const w1 = width(toCell);
+      const widthPx = (w0 + w1) / 2;
+      if (!(widthPx >= MINIMUM_WIDTH_PX) || widthPx > 0.75 * grid.rows * grid.stepPx) continue;
+      const lengthPx = (toCell - fromCell + 1) * grid.cellPx;
+      if (Math.abs(w1 - w0) > 0.05 * lengthPx || Math.min(w0, w1) < 0.6 * widthPx) continue;
+      if (lengthPx < 0.9 * widthPx) continue;
+      const pair = scorePair(grid, edges, upper, lower, fromCell, toCell, widthPx);
+      if (pair !== null) pairs.push(pair);
+    }
+  }
+  return pairs.sort((a, b) => b.score - a.score).slice(0, most);
+}
+
+type Colour = Float64Array;
+
+/** Difference of two colours in units where 1 is clearly seen: lightness steps of 12, hue steps of 6. */
+const lightnessStep = (a: Colour, b: Colour) => ((a[0] as number) - (b[0] as number)) / 12;
+function hueStep(a: Colour, b: Colour): number {
+  // Chroma in proportion to lightness does not change when light is taken away.
+  const la = Math.max(20, a[0] as number);
+  const lb = Math.max(20, b[0] as number);
+  const scale = Math.min(la, lb) / 6;
+  return scale * Math.hypot((a[1] as number) / la - (b[1] as number) / lb, (a[2] as number) / la - (b[2] as number) / lb);
+}
+/** Likeness of two patches of background, one of which may lie in shadow. 0 = the same. */
+const backgroundStep = (a: Colour, b: Colour) => Math.hypot(Math.min(0.4, 0.15 * Math.abs(lightnessStep(a, b))), hueStep(a, b));
+const fullStep = (a: Colour, b: Colour) => Math.hypot(lightnessStep(a, b), hueStep(a, b));
+
+function meanBand(grid: AlignedCells, line: (cell: number) => number, from: number, to: number, cells: readonly number[]): Colour | null {
+  const sum = new Float64Array(3);
+  const one = new Float64Array(3);
+  let n = 0;
+  for (const cell of cells) {
+    const y = line(cell);
+    if (!bandColour(grid, cell, y + Math.min(from, to), y + Math.max(from, to), one)) continue;
+    for (let k = 0; k < 3; k++) sum[k] = (sum[k] as number) + (one[k] as number);
+    n += 1;
+  }
+  if (n < 0.4 * cells.length) return null;
+  for (let k = 0; k < 3; k++) sum[k] = (sum[k] as number) / n;
+  return sum;
+}
+
+function scorePair(
+  grid: AlignedCells,
+  edges: readonly AlignedEdge[],
+  upper: AlignedEdge,
+  lower: AlignedEdge,
+  fromCell: number,
+  toCell: number,
+  widthPx: number,
+): SpecimenPair | null {
+  const n = toCell - fromCell + 1;
+  const cells = Array.from({ length: Math.min(n, 14) }, (_, i) => Math.round(fromCell + ((i + 0.5) * n) / Math.min(n, 14) - 0.5));
+  const at = (cell: number) => grid.firstAlong + cell * grid.cellPx;
+  const top = (cell: number) => upper.across + upper.slope * at(cell);
+  const low = (cell: number) => lower.across + lower.slope * at(cell);
+  const w = widthPx;
+  const skip = Math.max(1.2, 0.05 * w);
+  const near = Math.max(3, 0.22 * w);
+  const in1 = meanBand(grid, top, -skip, -near, cells);
+  const in2 = meanBand(grid, low, skip, near, cells);
+  const mid = meanBand(grid, (c) => (top(c) + low(c)) / 2, -0.15 * w, 0.15 * w, cells);
+  const out1 = meanBand(grid, top, skip, near, cells);
+  const out2 = meanBand(grid, low, -skip, -near, cells);
+  const far1 = meanBand(grid, top, near, 0.9 * w, cells) ?? out1;
+  const far2 = meanBand(grid, low, -near, -0.9 * w, cells) ?? out2;
+  if (in1 === null || in2 === null || mid === null) return null;
+  if (out1 === null && out2 === null) return null;
+
+  // A side cut off by the photo's border cannot be compared; it counts as unlike.
+  const combos: number[] = [];
+  for (const a of [out1, far1]) for (const b of [out2, far2]) if (a !== null && b !== null) combos.push(backgroundStep(a, b));
+  const outside = combos.length > 0 ? Math.min(...combos) : 3;
+
+  const perCell = (e: AlignedEdge) => Math.min(8, e.strength / Math.sqrt(e.toCell - e.fromCell + 1));
+  const s1 = perCell(upper);
+  const s2 = perCell(lower);
+  const weaker = Math.min(s1, s2);
+  const length = Math.log(((n * grid.cellPx) / w + 1) / 2);
+
+  const side1 = out1 === null ? 0 : fullStep(in1, out1);
+  const side2 = out2 === null ? 0 : fullStep(in2, out2);
+  const unlike = Math.min(1.5, Math.min(side1, side2));
+
+  // The ground further off: beside the specimen lies background, darkened on one side at the most.
+  const ground1 = meanBand(grid, top, 1.1 * w, 3 * w, cells) ?? far1;
+  const ground2 = meanBand(grid, low, -1.1 * w, -3 * w, cells) ?? far2;
+  const apart1 = out1 === null || ground1 === null ? 0 : fullStep(out1, ground1);
+  const apart2 = out2 === null || ground2 === null ? 0 : fullStep(out2, ground2);
+  const brighter = (a: Colour | null, b: Colour | null) => (a === null || b === null ? 0 : Math.max(0, lightnessStep(a, b)));
+  const glare = Math.max(brighter(out1, ground1), brighter(out2, ground2));
+
+  // Specimen and shadow together: an inner edge, and beyond it only darkened background.
+  let shadow = 0;
+  const ground = far1 !== null && far2 !== null ? ((far1[0] as number) > (far2[0] as number) ? far1 : far2) : (far1 ?? far2);
+  for (const inner of edges) {
+    if (inner === upper || inner === lower) continue;
+    const overlap = Math.min(inner.toCell, toCell) - Math.max(inner.fromCell, fromCell) + 1;
+    if (overlap < 0.6 * n) continue;
+    const strength = perCell(inner);
+    if (strength < 0.6 * weaker || strength < 1) continue;
+    const middle = (fromCell + toCell) / 2;
+    const position = (inner.across + inner.slope * at(middle) - low(middle)) / w;
+    if (position < 0.08 || position > 0.92 || ground === null) continue;
+    const line = (c: number) => inner.across + inner.slope * at(c);
+    for (const side of [1, -1] as const) {
+      const room = side === 1 ? (1 - position) * w : position * w;
+      const strip = meanBand(grid, line, side * Math.max(1, 0.12 * room), side * 0.88 * room, cells);
+      if (strip === null) continue;
+      const darker = (strip[0] as number) < (ground[0] as number) - 4;
+      const likeGround = hueStep(strip, ground);
+      const other = meanBand(grid, line, -side * Math.max(1, 0.05 * w), -side * 0.3 * w, cells);
+      const differs = other === null ? 0 : fullStep(strip, other);
+      if (darker && likeGround < 0.5 && differs > 0.8) shadow = Math.max(shadow, Math.min(1, differs / 2) * (1 - likeGround));
+    }
+  }
+  const terms = {
+    edges: 1.2 * Math.log(0.3 + weaker) + 0.4 * Math.log(0.3 + Math.max(s1, s2)),
+    length: 0.9 * Math.min(1.6, length),
+    outside: -1.1 * Math.min(3, outside),
+    unlike: 0.8 * unlike,
+    shadow: -(hueStep(mid, ground ?? mid) > 0.7 ? 1.2 : 0.35) * shadow,
+    nested: -1 * Math.min(1.2, Math.min(apart1, apart2)),
+    glare: -0.5 * Math.min(2, glare),
+    sharp: 0.8 * Math.min(1, Math.min(upper.sharpness, lower.sharpness)),
+    width: 0.25 * Math.log(w / 20),
+  };
+  const score = Object.values(terms).reduce((a, b) => a + b, 0);
+  return { upper, lower, fromCell, toCell, widthPx, score, terms };
+}
