@@ -39,7 +39,11 @@ export function alignCells(picture: Picture, alongRad: number, cellPx: number, s
   const firstAcross = -((rows - 1) / 2) * stepPx;
   const perCell = Math.max(2, Math.round(cellPx / 1.5));
   const size = cells * (rows + 1);
-  const cumulative: [Float64Array, Float64Array, Float64Array] = [new Float64Array(size), new Float64Array(size), new Float64Array(size)];
+  const cumulative: [Float64Array, Float64Array, Float64Array] = [
+    new Float64Array(size),
+    new Float64Array(size),
+    new Float64Array(size),
+  ];
   const inside = new Float64Array(size);
   for (let c = 0; c < cells; c++) {
     for (let r = 0; r < rows; r++) {

@@ -95,21 +95,51 @@ export function measureTrace(input: {
   });
   const k = frame.cameraDistanceRadii;
   const distance = Number.isFinite(k)
-    ? larger({ ...frame, cameraDistanceRadii: k * (1 + CAMERA_DISTANCE_RELATIVE_U) }, { ...frame, cameraDistanceRadii: Math.max(4, k / (1 + CAMERA_DISTANCE_RELATIVE_U)) })
+    ? larger(
+        { ...frame, cameraDistanceRadii: k * (1 + CAMERA_DISTANCE_RELATIVE_U) },
+        { ...frame, cameraDistanceRadii: Math.max(4, k / (1 + CAMERA_DISTANCE_RELATIVE_U)) },
+      )
     : change(fitWith({ ...frame, cameraDistanceRadii: USUAL_CAMERA_DISTANCE_RADII }));
 
   const tangent = Math.abs(Math.tan(degToRad(Math.min(89, Math.abs(fit.planeAngleDeg)))));
   const tilt = Math.sin(degToRad(input.cameraTiltStandardUncertaintyDeg)) ** 2 / 2;
   const foreshortening = radToDeg((tangent * tilt) / (1 + tangent * tangent));
-  const traceRadii = Math.max(0.3, 2 * Math.sin(Math.PI / 3) / Math.max(0.1, Math.cos(degToRad(fit.planeAngleDeg))));
-  const sampling = radToDeg((input.pointUncertaintyPx / frame.radiusPx) * (Math.sqrt(12) / traceRadii)) / Math.sqrt(Math.max(2, fit.independentPoints));
+  const traceRadii = Math.max(0.3, (2 * Math.sin(Math.PI / 3)) / Math.max(0.1, Math.cos(degToRad(fit.planeAngleDeg))));
+  const sampling =
+    radToDeg((input.pointUncertaintyPx / frame.radiusPx) * (Math.sqrt(12) / traceRadii)) /
+    Math.sqrt(Math.max(2, fit.independentPoints));
 
   const budget: BudgetLine[] = [
-    line('trace-roughness', fit.roughnessUncertaintyDeg, 'A', 'scatter of the trace about the fit, correlated points counted once'),
-    line('axis-direction', larger(turned(u.axisDeg), turned(-u.axisDeg)), 'A', `axis known to ${u.axisDeg.toFixed(2)}°`),
-    line('radius', larger(scaled(1 + u.radiusRelative), scaled(1 - u.radiusRelative)), 'A', `radius known to ${(100 * u.radiusRelative).toFixed(1)} %`),
-    line('centre', larger(shifted(u.centreRadii), shifted(-u.centreRadii)), 'A', `middle line known to ${(100 * u.centreRadii).toFixed(1)} % of the radius`),
-    line('camera-tilt', foreshortening, 'B', `camera out of square by ${input.cameraTiltStandardUncertaintyDeg}° (standard uncertainty)`),
+    line(
+      'trace-roughness',
+      fit.roughnessUncertaintyDeg,
+      'A',
+      'scatter of the trace about the fit, correlated points counted once',
+    ),
+    line(
+      'axis-direction',
+      larger(turned(u.axisDeg), turned(-u.axisDeg)),
+      'A',
+      `axis known to ${u.axisDeg.toFixed(2)}°`,
+    ),
+    line(
+      'radius',
+      larger(scaled(1 + u.radiusRelative), scaled(1 - u.radiusRelative)),
+      'A',
+      `radius known to ${(100 * u.radiusRelative).toFixed(1)} %`,
+    ),
+    line(
+      'centre',
+      larger(shifted(u.centreRadii), shifted(-u.centreRadii)),
+      'A',
+      `middle line known to ${(100 * u.centreRadii).toFixed(1)} % of the radius`,
+    ),
+    line(
+      'camera-tilt',
+      foreshortening,
+      'B',
+      `camera out of square by ${input.cameraTiltStandardUncertaintyDeg}° (standard uncertainty)`,
+    ),
     line('camera-distance', distance, 'B', 'camera about ten diameters away or more, perspective of the visible face'),
     line('pixel-sampling', sampling, 'B', `a trace point is placed to ${input.pointUncertaintyPx.toFixed(2)} px`),
     line('model-choice', fit.modelUncertaintyDeg, 'B', 'difference between shapes that fit about as well'),
@@ -118,6 +148,16 @@ export function measureTrace(input: {
   return { fit, budget, combinedStandardUncertaintyDeg: combined };
 }
 
-function line(component: string, standardUncertaintyDeg: number, evaluation: 'A' | 'B', explanation: string): BudgetLine {
-  return { component, standardUncertaintyDeg: Number.isFinite(standardUncertaintyDeg) ? standardUncertaintyDeg : 0, evaluation, explanation };
+function line(
+  component: string,
+  standardUncertaintyDeg: number,
+  evaluation: 'A' | 'B',
+  explanation: string,
+): BudgetLine {
+  return {
+    component,
+    standardUncertaintyDeg: Number.isFinite(standardUncertaintyDeg) ? standardUncertaintyDeg : 0,
+    evaluation,
+    explanation,
+  };
 }

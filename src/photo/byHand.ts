@@ -37,17 +37,29 @@ export function measureByHand(input: ByHandInput): ByHandMeasurement {
   const [from, to] = input.axisPx;
   const numbers = [...from, ...to, input.diameterPx, ...input.tracePx.flat()];
   if (!numbers.every(Number.isFinite)) {
-    throw new LabError('not-a-number', 'axis, diameter and trace must be finite numbers of pixels', { input: 'tracePx' });
+    throw new LabError('not-a-number', 'axis, diameter and trace must be finite numbers of pixels', {
+      input: 'tracePx',
+    });
   }
   const axisLengthPx = Math.hypot(to[0] - from[0], to[1] - from[1]);
   if (!(axisLengthPx >= 2)) {
-    throw new LabError('out-of-range', `the two axis points must be at least 2 px apart, got ${axisLengthPx.toFixed(1)} px`, { input: 'axisPx', value: input.axisPx });
+    throw new LabError(
+      'out-of-range',
+      `the two axis points must be at least 2 px apart, got ${axisLengthPx.toFixed(1)} px`,
+      { input: 'axisPx', value: input.axisPx },
+    );
   }
   if (!(input.diameterPx > 4)) {
-    throw new LabError('out-of-range', `diameterPx must be > 4 px, got ${input.diameterPx}`, { input: 'diameterPx', value: input.diameterPx });
+    throw new LabError('out-of-range', `diameterPx must be > 4 px, got ${input.diameterPx}`, {
+      input: 'diameterPx',
+      value: input.diameterPx,
+    });
   }
   if (input.tracePx.length < 2) {
-    throw new LabError('out-of-range', `the trace needs at least 2 points, got ${input.tracePx.length}`, { input: 'tracePx', value: input.tracePx.length });
+    throw new LabError('out-of-range', `the trace needs at least 2 points, got ${input.tracePx.length}`, {
+      input: 'tracePx',
+      value: input.tracePx.length,
+    });
   }
   const frame = frameFromAxis(point(from), point(to), input.diameterPx, {
     cameraDistanceRadii: USUAL_CAMERA_DISTANCE_RADII,
@@ -68,12 +80,18 @@ export function measureByHand(input: ByHandInput): ByHandMeasurement {
     pointUncertaintyPx: placedPx,
   });
   if (measured === null) {
-    throw new LabError('out-of-range', 'the trace is too short to have a direction; set its points from edge to edge', { input: 'tracePx', value: input.tracePx.length });
+    throw new LabError('out-of-range', 'the trace is too short to have a direction; set its points from edge to edge', {
+      input: 'tracePx',
+      value: input.tracePx.length,
+    });
   }
   const { fit, budget, combinedStandardUncertaintyDeg } = measured;
   const warnings: Warning[] = [];
   if (input.tracePx.length < 5) {
-    warnings.push({ code: 'few-points', message: `${input.tracePx.length} trace points; with five or more the roughness of the break enters the uncertainty` });
+    warnings.push({
+      code: 'few-points',
+      message: `${input.tracePx.length} trace points; with five or more the roughness of the break enters the uncertainty`,
+    });
   }
   return {
     planeAngleDeg: fit.planeAngleDeg,

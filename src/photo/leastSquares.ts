@@ -86,7 +86,8 @@ export function fitLinear(
         const cj = (columns[j] as ArrayLike<number>)[i] as number;
         right[j] = (right[j] as number) + w * cj * (y[i] as number);
         const row = normal[j] as number[];
-        for (let k = j; k < p; k++) row[k] = (row[k] as number) + w * cj * ((columns[k] as ArrayLike<number>)[i] as number);
+        for (let k = j; k < p; k++)
+          row[k] = (row[k] as number) + w * cj * ((columns[k] as ArrayLike<number>)[i] as number);
       }
     }
     for (let j = 0; j < p; j++) {
@@ -103,7 +104,8 @@ export function fitLinear(
     const coefficients = inverse.map((row) => row.reduce((sum, v, j) => sum + v * (right[j] as number), 0));
     for (let i = 0; i < n; i++) {
       let value = y[i] as number;
-      for (let j = 0; j < p; j++) value -= (coefficients[j] as number) * ((columns[j] as ArrayLike<number>)[i] as number);
+      for (let j = 0; j < p; j++)
+        value -= (coefficients[j] as number) * ((columns[j] as ArrayLike<number>)[i] as number);
       residuals[i] = value;
     }
     sigma = options.priorNoise ?? Math.max(1e-12, 1.4826 * medianOf(residuals.map(Math.abs)));

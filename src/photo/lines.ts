@@ -86,7 +86,8 @@ export function findEdges(picture: Picture): EdgeSet {
     const half = ((e[i] as number) - (g[i] as number)) / 2;
     const root = Math.sqrt(half * half + (f[i] as number) ** 2);
     size[i] = Math.sqrt(((e[i] as number) + (g[i] as number)) / 2 + root);
-    angle[i] = (size[i] as number) >= 2 ? 0.5 * Math.atan2(2 * (f[i] as number), (e[i] as number) - (g[i] as number)) : 0;
+    angle[i] =
+      (size[i] as number) >= 2 ? 0.5 * Math.atan2(2 * (f[i] as number), (e[i] as number) - (g[i] as number)) : 0;
   }
   const xs: number[] = [];
   const ys: number[] = [];
@@ -141,7 +142,13 @@ const WINDOW = 4;
  * @param most how many lines at the most
  * @param minimumSupport weight a line needs, px
  */
-export function findLines(edges: EdgeSet, widthPx: number, heightPx: number, most: number, minimumSupport: number): EdgeLine[] {
+export function findLines(
+  edges: EdgeSet,
+  widthPx: number,
+  heightPx: number,
+  most: number,
+  minimumSupport: number,
+): EdgeLine[] {
   const reach = Math.ceil(Math.hypot(widthPx, heightPx)) + 2;
   const columns = 2 * reach + 1;
   const votes = new Float32Array(STEPS * columns);
@@ -204,7 +211,11 @@ export function findLines(edges: EdgeSet, widthPx: number, heightPx: number, mos
   return lines;
 }
 
-function refineLine(edges: EdgeSet, used: Uint8Array, seed: { normal: number; rho: number }): { line: EdgeLine | null; members: number[] } {
+function refineLine(
+  edges: EdgeSet,
+  used: Uint8Array,
+  seed: { normal: number; rho: number },
+): { line: EdgeLine | null; members: number[] } {
   let { normal, rho } = seed;
   let members: number[] = [];
   for (let round = 0; round < 3; round++) {

@@ -9,7 +9,11 @@ export interface MeasureOptions {
   /** Standard uncertainty of the camera's tilt out of square, degrees; default 1.5 (±3°, k = 2). */
   readonly cameraTiltStandardUncertaintyDeg?: number;
   /** By hand: the two ends of the axis and the points of the trace, px of the upright photo. */
-  readonly byHand?: { readonly axisPx: readonly [PointPx, PointPx]; readonly diameterPx: number; readonly tracePx: readonly PointPx[] };
+  readonly byHand?: {
+    readonly axisPx: readonly [PointPx, PointPx];
+    readonly diameterPx: number;
+    readonly tracePx: readonly PointPx[];
+  };
   /** Receives the stages as pictures (PNG bytes), for `--debug`. */
   readonly onStage?: (name: string, png: Uint8Array) => void;
 }

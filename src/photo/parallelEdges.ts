@@ -31,7 +31,9 @@ function stepMap(grid: AlignedCells, reach: number): { steps: Float32Array; nois
         const up = (grid.inside[base + r + reach] as number) - (grid.inside[base + r] as number);
         const low = (grid.inside[base + r] as number) - (grid.inside[base + r - reach] as number);
         if (up < reach || low < reach) continue;
-        const v = ((sums[base + r + reach] as number) - 2 * (sums[base + r] as number) + (sums[base + r - reach] as number)) / reach;
+        const v =
+          ((sums[base + r + reach] as number) - 2 * (sums[base + r] as number) + (sums[base + r - reach] as number)) /
+          reach;
         steps[(c * rows + r) * 3 + k] = v;
         if ((c + r) % 3 === 0) sample.push(Math.abs(v));
       }
@@ -98,7 +100,10 @@ export function findParallelEdges(grid: AlignedCells, maximumSlope: number, most
       for (let c = 0; c < cells; c++) {
         const r = Math.round(r0 + (slope * (grid.firstAlong + c * cellPx)) / stepPx);
         const i = (c * rows + r) * 3;
-        const v = r < 0 || r >= rows ? -1 : (steps[i] as number) * u0 + (steps[i + 1] as number) * u1 + (steps[i + 2] as number) * u2 - 1;
+        const v =
+          r < 0 || r >= rows
+            ? -1
+            : (steps[i] as number) * u0 + (steps[i + 1] as number) * u1 + (steps[i + 2] as number) * u2 - 1;
         if (run <= 0) {
           run = 0;
           from = c;
@@ -151,7 +156,10 @@ function sharpnessOf(grid: AlignedCells, edge: AlignedEdge): number {
   const b = new Float64Array(3);
   for (let c = edge.fromCell; c <= edge.toCell; c++) {
     const y = edge.across + edge.slope * (grid.firstAlong + c * grid.cellPx);
-    for (const [sum, reach, width] of [[fine, 0, 1.5], [coarse, 2.2, 1.5]] as const) {
+    for (const [sum, reach, width] of [
+      [fine, 0, 1.5],
+      [coarse, 2.2, 1.5],
+    ] as const) {
       if (!bandColour(grid, c, y + reach, y + reach + width, a)) continue;
       if (!bandColour(grid, c, y - reach - width, y - reach, b)) continue;
       for (let k = 0; k < 3; k++) sum[k] = (sum[k] as number) + (a[k] as number) - (b[k] as number);
@@ -160,4 +168,3 @@ function sharpnessOf(grid: AlignedCells, edge: AlignedEdge): number {
   const size = (v: Float64Array) => Math.hypot(v[0] as number, v[1] as number, v[2] as number);
   return Math.min(1.5, size(fine) / Math.max(1e-6, size(coarse)));
 }
-

@@ -48,7 +48,12 @@ export function shrink(picture: Picture, factor: number): Picture {
     for (let i = 0; i < out.length; i++) out[i] = (out[i] as number) * norm;
     return out;
   });
-  return { widthPx: w, heightPx: h, planes: planes as [Float32Array, Float32Array, Float32Array], scale: picture.scale / factor };
+  return {
+    widthPx: w,
+    heightPx: h,
+    planes: planes as [Float32Array, Float32Array, Float32Array],
+    scale: picture.scale / factor,
+  };
 }
 
 /** Bilinear value of one plane; points outside take the border's value. */

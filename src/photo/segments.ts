@@ -53,7 +53,11 @@ function pieceOf(sums: Sums, from: number, to: number): { sse: number; planeAngl
  * @param minimumPoints fewest points of a piece, ≥ 3
  * @returns null when the trace is too short for that many pieces
  */
-export function bestPieces(points: readonly SurfacePoint[], count: number, minimumPoints: number): StraightPiece[] | null {
+export function bestPieces(
+  points: readonly SurfacePoint[],
+  count: number,
+  minimumPoints: number,
+): StraightPiece[] | null {
   const n = points.length;
   if (n < count * minimumPoints) return null;
   const sums = cumulate(points);

@@ -59,13 +59,22 @@ function hueStep(a: Colour, b: Colour): number {
   const la = Math.max(20, a[0] as number);
   const lb = Math.max(20, b[0] as number);
   const scale = Math.min(la, lb) / 6;
-  return scale * Math.hypot((a[1] as number) / la - (b[1] as number) / lb, (a[2] as number) / la - (b[2] as number) / lb);
+  return (
+    scale * Math.hypot((a[1] as number) / la - (b[1] as number) / lb, (a[2] as number) / la - (b[2] as number) / lb)
+  );
 }
 /** Likeness of two patches of background, one of which may lie in shadow. 0 = the same. */
-const backgroundStep = (a: Colour, b: Colour) => Math.hypot(Math.min(0.4, 0.15 * Math.abs(lightnessStep(a, b))), hueStep(a, b));
+const backgroundStep = (a: Colour, b: Colour) =>
+  Math.hypot(Math.min(0.4, 0.15 * Math.abs(lightnessStep(a, b))), hueStep(a, b));
 const fullStep = (a: Colour, b: Colour) => Math.hypot(lightnessStep(a, b), hueStep(a, b));
 
-function meanBand(grid: AlignedCells, line: (cell: number) => number, from: number, to: number, cells: readonly number[]): Colour | null {
+function meanBand(
+  grid: AlignedCells,
+  line: (cell: number) => number,
+  from: number,
+  to: number,
+  cells: readonly number[],
+): Colour | null {
   const sum = new Float64Array(3);
   const one = new Float64Array(3);
   let n = 0;
@@ -90,7 +99,9 @@ function scorePair(
   widthPx: number,
 ): SpecimenPair | null {
   const n = toCell - fromCell + 1;
-  const cells = Array.from({ length: Math.min(n, 14) }, (_, i) => Math.round(fromCell + ((i + 0.5) * n) / Math.min(n, 14) - 0.5));
+  const cells = Array.from({ length: Math.min(n, 14) }, (_, i) =>
+    Math.round(fromCell + ((i + 0.5) * n) / Math.min(n, 14) - 0.5),
+  );
   const at = (cell: number) => grid.firstAlong + cell * grid.cellPx;
   const top = (cell: number) => upper.across + upper.slope * at(cell);
   const low = (cell: number) => lower.across + lower.slope * at(cell);
@@ -109,7 +120,8 @@ function scorePair(
 
   // A side cut off by the photo's border cannot be compared; it counts as unlike.
   const combos: number[] = [];
-  for (const a of [out1, far1]) for (const b of [out2, far2]) if (a !== null && b !== null) combos.push(backgroundStep(a, b));
+  for (const a of [out1, far1])
+    for (const b of [out2, far2]) if (a !== null && b !== null) combos.push(backgroundStep(a, b));
   const outside = combos.length > 0 ? Math.min(...combos) : 3;
 
   const perCell = (e: AlignedEdge) => Math.min(8, e.strength / Math.sqrt(e.toCell - e.fromCell + 1));
@@ -127,12 +139,14 @@ function scorePair(
   const ground2 = meanBand(grid, low, -1.1 * w, -3 * w, cells) ?? far2;
   const apart1 = out1 === null || ground1 === null ? 0 : fullStep(out1, ground1);
   const apart2 = out2 === null || ground2 === null ? 0 : fullStep(out2, ground2);
-  const brighter = (a: Colour | null, b: Colour | null) => (a === null || b === null ? 0 : Math.max(0, lightnessStep(a, b)));
+  const brighter = (a: Colour | null, b: Colour | null) =>
+    a === null || b === null ? 0 : Math.max(0, lightnessStep(a, b));
   const glare = Math.max(brighter(out1, ground1), brighter(out2, ground2));
 
   // Specimen and shadow together: an inner edge, and beyond it only darkened background.
   let shadow = 0;
-  const ground = far1 !== null && far2 !== null ? ((far1[0] as number) > (far2[0] as number) ? far1 : far2) : (far1 ?? far2);
+  const ground =
+    far1 !== null && far2 !== null ? ((far1[0] as number) > (far2[0] as number) ? far1 : far2) : (far1 ?? far2);
   for (const inner of edges) {
     if (inner === upper || inner === lower) continue;
     const overlap = Math.min(inner.toCell, toCell) - Math.max(inner.fromCell, fromCell) + 1;
@@ -151,7 +165,8 @@ function scorePair(
       const likeGround = hueStep(strip, ground);
       const other = meanBand(grid, line, -side * Math.max(1, 0.05 * w), -side * 0.3 * w, cells);
       const differs = other === null ? 0 : fullStep(strip, other);
-      if (darker && likeGround < 0.5 && differs > 0.8) shadow = Math.max(shadow, Math.min(1, differs / 2) * (1 - likeGround));
+      if (darker && likeGround < 0.5 && differs > 0.8)
+        shadow = Math.max(shadow, Math.min(1, differs / 2) * (1 - likeGround));
     }
   }
   const terms = {

@@ -66,7 +66,12 @@ export interface CameraBow {
 }
 
 /** Fits x = c + a·φ + B·cos φ (helix) or x = c + A·sin φ + B·cos φ (flat cut) over the whole visible trace. */
-function fitSingle(points: readonly SurfacePoint[], name: 'line' | 'flat', bow: CameraBow, independentLimit: number): SingleFit | null {
+function fitSingle(
+  points: readonly SurfacePoint[],
+  name: 'line' | 'flat',
+  bow: CameraBow,
+  independentLimit: number,
+): SingleFit | null {
   const y = columnOf(points, (p) => p.x);
   const ones = columnOf(points, () => 1);
   const odd = columnOf(points, (p) => (name === 'line' ? p.phi : Math.sin(p.phi)));
@@ -109,7 +114,8 @@ function fitSingle(points: readonly SurfacePoint[], name: 'line' | 'flat', bow: 
     independent,
     // The bow of a helix is held by its prior: it counts as a parameter only as far as the photo moves it.
     parameters: name === 'line' ? 2.2 : 3,
-    sse: fit.residuals.reduce((sum, r) => sum + Math.min(r * r, 9 * sigma * sigma), 0) * cosTheta2 +
+    sse:
+      fit.residuals.reduce((sum, r) => sum + Math.min(r * r, 9 * sigma * sigma), 0) * cosTheta2 +
       (name === 'line' ? ((b - bow.mean) / bow.sigma) ** 2 * (FLOOR * FLOOR) : 0),
     curve: Array.from({ length: 61 }, (_, i) => {
       const lo = points.reduce((m, p) => Math.min(m, p.phi), 9);
@@ -153,12 +159,19 @@ const STEEP_DEG = 67.5;
 const FLAT_DEG = 22.5;
 
 /** Least-squares line through one piece, corners left out; steep pieces as s(x). */
-function refinePiece(points: readonly SurfacePoint[], piece: StraightPiece, independentLimit: number): SingleFit | null {
+function refinePiece(
+  points: readonly SurfacePoint[],
+  piece: StraightPiece,
+  independentLimit: number,
+): SingleFit | null {
   const trim = Math.min(Math.floor((piece.to - piece.from) * 0.12), 4);
   const part = points.slice(piece.from + trim, piece.to + 1 - trim);
   if (part.length < 4) return null;
   if (Math.abs(piece.planeAngleDeg) > 55) return fitSteep(part, independentLimit);
-  const fit = fitLinear([columnOf(part, () => 1), columnOf(part, (p) => p.phi)], columnOf(part, (p) => p.x));
+  const fit = fitLinear(
+    [columnOf(part, () => 1), columnOf(part, (p) => p.phi)],
+    columnOf(part, (p) => p.x),
+  );
   if (fit === null) return null;
   const [c, a] = fit.coefficients as [number, number];
   const sigma = Math.max(FLOOR, Math.sqrt((fit.rms ** 2 + fit.robustSigma ** 2) / 2));
@@ -193,7 +206,10 @@ interface Division {
 const criterion = (sse: number, points: number, independent: number, parameters: number) =>
   independent * Math.log(sse / points + FLOOR * FLOOR) + parameters * Math.log(independent);
 
-function bestDivision(points: readonly SurfacePoint[], independentLimit: number): { division: Division | null; independent: number } {
+function bestDivision(
+  points: readonly SurfacePoint[],
+  independentLimit: number,
+): { division: Division | null; independent: number } {
   const minimum = Math.max(6, Math.round(points.length * 0.09));
   const most = bestPieces(points, 4, minimum) ?? bestPieces(points, 2, minimum);
   const factor = most === null ? 4 : correlationFactor(pieceResiduals(points, most));
@@ -299,7 +315,11 @@ function describeSingle(
   };
 }
 
-function describePieces(points: readonly SurfacePoint[], pieces: readonly StraightPiece[], independentLimit: number): TraceFit | null {
+function describePieces(
+  points: readonly SurfacePoint[],
+  pieces: readonly StraightPiece[],
+  independentLimit: number,
+): TraceFit | null {
   const fits: { fit: SingleFit; share: number; kind: PieceKind }[] = [];
   for (const piece of pieces) {
     const fit = refinePiece(points, piece, independentLimit);
@@ -323,9 +343,14 @@ function describePieces(points: readonly SurfacePoint[], pieces: readonly Straig
   }
   const governing = fits
     .filter((f) => f.kind !== closing)
-    .reduce((a, b) => (b.share > a.share ? b : a), fits.find((f) => f.kind !== closing) ?? (fits[0] as (typeof fits)[number]));
+    .reduce(
+      (a, b) => (b.share > a.share ? b : a),
+      fits.find((f) => f.kind !== closing) ?? (fits[0] as (typeof fits)[number]),
+    );
   // Pieces of one helix on both sides of its closing step speak together.
-  const same = fits.filter((f) => f.kind === governing.kind && planeAngleDistanceDeg(f.fit.planeAngleDeg, governing.fit.planeAngleDeg) < 15);
+  const same = fits.filter(
+    (f) => f.kind === governing.kind && planeAngleDistanceDeg(f.fit.planeAngleDeg, governing.fit.planeAngleDeg) < 15,
+  );
   const weights = same.map((f) => f.share ** 3);
   const totalWeight = weights.reduce((a, b) => a + b, 0);
   const offset = same.reduce(
@@ -333,9 +358,9 @@ function describePieces(points: readonly SurfacePoint[], pieces: readonly Straig
     0,
   );
   const planeAngleDeg = wrapPlaneAngleDeg(governing.fit.planeAngleDeg + offset / totalWeight);
-  const uncertainty = Math.sqrt(
-    same.reduce((sum, f, i) => sum + ((weights[i] as number) * f.fit.slopeUncertaintyDeg) ** 2, 0),
-  ) / totalWeight;
+  const uncertainty =
+    Math.sqrt(same.reduce((sum, f, i) => sum + ((weights[i] as number) * f.fit.slopeUncertaintyDeg) ** 2, 0)) /
+    totalWeight;
   return {
     shape,
     planeAngleDeg,
