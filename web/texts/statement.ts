@@ -1,0 +1,58 @@
+export const STATEMENT = {
+  title: 'Failure mode',
+  provisional: 'Live, from the trace you are setting. Nothing is stored until you save.',
+  noReading: 'No reading yet',
+  noReadingDetail: 'Add a photo of the break or enter an angle; the failure mode follows from it.',
+  noGeometry: 'The failure mode waits for a valid geometry.',
+  probability: (text: string) => `probability ${text}`,
+  likeliest: (mode: string, text: string) => `likeliest: ${mode}, ${text}`,
+  planeAngle: 'Plane angle θ',
+  tilt: 'Tilt β of the flat break',
+  coverage: (k: string) => `expanded uncertainty, k = ${k}`,
+  hand: 'Hand',
+  shape: 'Shape',
+  segments: 'Segments',
+  segment: (angle: string, share: string, closing: boolean) =>
+    `${angle} over ${share}${closing ? ' (closing step)' : ''}`,
+  probabilities: 'Probability of each mode',
+  cells: 'Nearest plane, probability',
+  evidence: 'Evidence',
+  rule: 'Declared rule',
+  notes: 'Assumed or missing',
+  warnings: 'About this reading',
+  budget: 'Where the uncertainty comes from',
+  budgetComponent: 'Component',
+  budgetStandard: 'u',
+  budgetHow: 'How it was found',
+  compared: {
+    planeAngle: 'Compared: the plane angle θ.',
+    planeTilt: 'Compared: the tilt β, the true inclination of a flat break.',
+  },
+  proposal: 'A proposal until an authorised person accepts it.',
+} as const;
+
+export const STRESSES = {
+  title: 'Stresses and planes',
+  elastic: 'Elastic torsional strength T·r/J',
+  fullyPlastic: 'Fully plastic estimate',
+  quoted: 'quoted',
+  sigma1: 'Largest normal stress σ₁',
+  sigma2: 'Smallest normal stress σ₂',
+  maxShear: 'Largest shear stress',
+  axial: 'Axial stress σx',
+  plane: 'Plane',
+  angle: 'θ',
+  normal: 'σn',
+  shear: 'τnt',
+  unknown: 'Enter the largest torque to see the stresses.',
+  invalid: 'The stresses wait for a valid geometry.',
+  figure: 'Stress on every plane, predicted planes and the measured angle',
+} as const;
+
+export const SHEET = {
+  pdf: 'PDF of this test',
+  noPhotos: 'No photo of this test yet.',
+  missing: 'There is no such test.',
+  backToList: 'Back to the list',
+  demo: 'Invented data, rendered photo',
+} as const;
