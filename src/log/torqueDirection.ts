@@ -18,7 +18,6 @@ const WORDS: Readonly<Record<Direction, readonly string[]>> = {
     'anticlockwise',
     'acw',
     'positive',
-    '+',
     'gegenuhrzeigersinn',
     'gegendenuhrzeigersinn',
     'antihoraire',
@@ -34,8 +33,6 @@ const WORDS: Readonly<Record<Direction, readonly string[]>> = {
     'cw',
     'clockwise',
     'negative',
-    '-',
-    '−',
     'imuhrzeigersinn',
     'uhrzeigersinn',
     'horaire',
@@ -48,14 +45,13 @@ const WORDS: Readonly<Record<Direction, readonly string[]>> = {
   ],
 };
 const BY_WORD = new Map<string, Direction>([
-  ...WORDS.ccw.map((word): [string, Direction] => [fold(word) || word, 'ccw']),
-  ...WORDS.cw.map((word): [string, Direction] => [fold(word) || word, 'cw']),
+  ...WORDS.ccw.map((word): [string, Direction] => [fold(word), 'ccw']),
+  ...WORDS.cw.map((word): [string, Direction] => [fold(word), 'cw']),
 ]);
 
 /** The direction a word means, facing the driven end; null for a word that is none. */
 export function directionOfWord(word: string): Direction | null {
-  const text = word.trim();
-  return BY_WORD.get(fold(text)) ?? BY_WORD.get(text) ?? null;
+  return BY_WORD.get(fold(word)) ?? null;
 }
 
 export interface TorqueWithDirection {
