@@ -11,7 +11,7 @@ export const ERRORS = {
   'not-a-number': { status: 422, fix: 'Give a plain number with its unit.' },
   'unknown-unit': { status: 422, fix: 'Use one of the units listed in the message.' },
   'missing-value': { status: 422, fix: 'Fill in the value.' },
-  'contradiction': { status: 422, fix: 'Two values exclude each other; correct one of them.' },
+  contradiction: { status: 422, fix: 'Two values exclude each other; correct one of them.' },
   'invalid-request': { status: 422, fix: 'Correct the fields named in the message.' },
   'not-found': { status: 404, fix: 'Check the identifier; the record may have another one.' },
   'already-exists': { status: 409, fix: 'Open the existing record, or change the specimen id or test date.' },
@@ -22,8 +22,8 @@ export const ERRORS = {
   'foreign-host': { status: 421, fix: 'Open the page under the address the service printed.' },
   'foreign-origin': { status: 403, fix: 'Open the page under the address the service printed.' },
   'not-loopback': { status: 400, fix: 'Serve on 127.0.0.1, ::1 or localhost; there are no accounts yet.' },
-  'usage': { status: 400, fix: 'See --help.' },
-  'busy': { status: 503, fix: 'Try again in a moment.' },
+  usage: { status: 400, fix: 'See --help.' },
+  busy: { status: 503, fix: 'Try again in a moment.' },
 } as const;
 
 export type ErrorCode = keyof typeof ERRORS;
