@@ -31,9 +31,22 @@ function stepMap(grid: AlignedCells, reach: number): { steps: Float32Array; nois
         const up = (grid.inside[base + r + reach] as number) - (grid.inside[base + r] as number);
         const low = (grid.inside[base + r] as number) - (grid.inside[base + r - reach] as number);
         if (up < reach || low < reach) continue;
-        const v =
+        let v =
           ((sums[base + r + reach] as number) - 2 * (sums[base + r] as number) + (sums[base + r - reach] as number)) /
           reach;
+        // What a slope of the shading would give is taken off: the sheen of a round bar is a slope, its edge is a step.
+        const far = 2 * reach;
+        if (r >= far && r + far < rows + 1) {
+          const outer =
+            ((sums[base + r + far] as number) -
+              (sums[base + r + reach] as number) -
+              (sums[base + r - reach] as number) +
+              (sums[base + r - far] as number)) /
+            reach;
+          const whole =
+            (grid.inside[base + r + far] as number) - (grid.inside[base + r - far] as number) >= 2 * far;
+          if (whole) v = 1.5 * (v - Math.sign(v) * Math.min(Math.abs(v), Math.max(0, (outer * Math.sign(v)) / 3)));
+        }
         steps[(c * rows + r) * 3 + k] = v;
         if ((c + r) % 3 === 0) sample.push(Math.abs(v));
       }

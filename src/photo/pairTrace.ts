@@ -1,0 +1,114 @@
+import { type GapEvidence, gapEvidence } from './gapEvidence.ts';
+import type { Picture } from './picture.ts';
+import { cheapestPath, type StepCosts, stepCosts, type TracePath } from './tracePath.ts';
+import type { SpecimenFrame, SurfacePoint } from './unroll.ts';
+import { type UnrolledMap, unrollFace } from './unrolledMap.ts';
+
+/** Half-width of the visible face that is searched, radians (72°): beyond it the surface is seen too flat. */
+export const SEARCHED_HALF_WIDTH = 1.25;
+
+/** A gap or crack between two halves, followed from one edge of the visible face to the other. */
+export interface PairTrace {
+  readonly map: UnrolledMap;
+  readonly evidence: GapEvidence;
+  readonly costs: StepCosts;
+  readonly path: TracePath;
+  readonly points: readonly SurfacePoint[];
+  /** Mean cost a row; 0.03 for a clear gap, near 1 for none. */
+  readonly costPerRow: number;
+  /** Share of the rows in which the path crosses nothing like a gap. */
+  readonly missingShare: number;
+  /** Longest stretch of such rows at one end of the path, share of the rows. */
+  readonly missingEnd: number;
+}
+
+export interface PairSearch {
+  /** Stretch to search, radii from the frame's origin. */
+  readonly fromX: number;
+  readonly toX: number;
+  readonly stepRadii: number;
+  readonly gapSizes: readonly number[];
+  /** Keep to this trace, at most `reachRadii` away from it. */
+  readonly near?: { readonly points: readonly SurfacePoint[]; readonly reachRadii: number };
+}
+
+/** The cheapest trace across the visible face; null when the stretch is too short to search. */
+export function searchPairTrace(picture: Picture, frame: SpecimenFrame, search: PairSearch): PairTrace | null {
+  const map = unrollFace(picture, frame, search.fromX, search.toX, search.stepRadii, SEARCHED_HALF_WIDTH);
+  if (map.columns < 12) return null;
+  const evidence = gapEvidence(map, search.gapSizes);
+  const costs = stepCosts(evidence, map.rows, map.columns);
+  const blocked = search.near === undefined ? undefined : bandAround(map, search.near.points, search.near.reachRadii);
+  const path = cheapestPath(costs, blocked);
+  if (path === null) return null;
+  return describe(map, evidence, costs, path);
+}
+
+/** Points further than `reach` from the trace, as a mask (1 = outside). */
+function bandAround(map: UnrolledMap, points: readonly SurfacePoint[], reach: number): Uint8Array {
+  const blocked = new Uint8Array(map.rows * map.columns).fill(1);
+  const steps = Math.ceil(reach / map.stepRadii);
+  const limit = steps * steps;
+  const mark = (x: number, phi: number) => {
+    const c0 = Math.round((x - map.firstX) / map.stepRadii);
+    const r0 = Math.round((phi - map.firstPhi) / map.stepRadii);
+    for (let r = Math.max(0, r0 - steps); r <= Math.min(map.rows - 1, r0 + steps); r++) {
+      const left = Math.floor(Math.sqrt(limit - (r - r0) ** 2));
+      const from = Math.max(0, c0 - left);
+      const to = Math.min(map.columns - 1, c0 + left);
+      if (to >= from) blocked.fill(0, r * map.columns + from, r * map.columns + to + 1);
+    }
+  };
+  for (let i = 0; i < points.length; i++) {
+    const a = points[i] as SurfacePoint;
+    const b = points[Math.min(points.length - 1, i + 1)] as SurfacePoint;
+    const pieces = Math.max(1, Math.ceil(Math.hypot(b.x - a.x, b.phi - a.phi) / (reach / 2)));
+    for (let k = 0; k < pieces; k++) mark(a.x + ((b.x - a.x) * k) / pieces, a.phi + ((b.phi - a.phi) * k) / pieces);
+  }
+  return blocked;
+}
+
+const MISSING_COST = 0.7;
+
+function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, path: TracePath): PairTrace {
+  const n = path.rows.length;
+  const points: SurfacePoint[] = [];
+  const perRow = new Float64Array(map.rows);
+  const counts = new Float64Array(map.rows);
+  for (let i = 0; i < n; i++) {
+    const r = path.rows[i] as number;
+    const c = path.columns[i] as number;
+    points.push({ x: map.firstX + c * map.stepRadii, phi: map.firstPhi + r * map.stepRadii });
+    const at = r * map.columns + c;
+    const inRow = i > 0 && path.rows[i - 1] === r;
+    perRow[r] = (perRow[r] as number) + ((inRow ? costs.along[at] : costs.across[at]) as number);
+    counts[r] = (counts[r] as number) + 1;
+  }
+  const smoothed = new Float64Array(map.rows);
+  const reach = Math.max(1, Math.round(0.06 / map.stepRadii));
+  for (let r = 0; r < map.rows; r++) {
+    let sum = 0;
+    let m = 0;
+    for (let q = Math.max(0, r - reach); q <= Math.min(map.rows - 1, r + reach); q++) {
+      sum += (perRow[q] as number) / Math.max(1, counts[q] as number);
+      m += 1;
+    }
+    smoothed[r] = sum / m;
+  }
+  let missing = 0;
+  for (const v of smoothed) if (v > MISSING_COST) missing += 1;
+  let low = 0;
+  while (low < map.rows && (smoothed[low] as number) > MISSING_COST) low += 1;
+  let high = 0;
+  while (high < map.rows && (smoothed[map.rows - 1 - high] as number) > MISSING_COST) high += 1;
+  return {
+    map,
+    evidence,
+    costs,
+    path,
+    points,
+    costPerRow: path.cost / map.rows,
+    missingShare: missing / map.rows,
+    missingEnd: Math.max(low, high) / map.rows,
+  };
+}
