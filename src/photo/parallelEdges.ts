@@ -43,8 +43,7 @@ function stepMap(grid: AlignedCells, reach: number): { steps: Float32Array; nois
               (sums[base + r - reach] as number) +
               (sums[base + r - far] as number)) /
             reach;
-          const whole =
-            (grid.inside[base + r + far] as number) - (grid.inside[base + r - far] as number) >= 2 * far;
+          const whole = (grid.inside[base + r + far] as number) - (grid.inside[base + r - far] as number) >= 2 * far;
           if (whole) v = 1.5 * (v - Math.sign(v) * Math.min(Math.abs(v), Math.max(0, (outer * Math.sign(v)) / 3)));
         }
         steps[(c * rows + r) * 3 + k] = v;

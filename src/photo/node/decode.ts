@@ -1,11 +1,20 @@
 import { fileTypeFromBuffer } from 'file-type';
-import sharp from 'sharp';
+import sharp, { type Sharp } from 'sharp';
 import { type Picture, pictureFromRgb } from '../picture.ts';
 
 /** Largest photo taken in, pixels (decoding takes three bytes each). */
 export const MOST_PIXELS = 60_000_000;
 
-const PHOTO_TYPES = new Set(['image/jpeg', 'image/png', 'image/webp', 'image/tiff', 'image/gif', 'image/heic', 'image/heif', 'image/avif']);
+const PHOTO_TYPES = new Set([
+  'image/jpeg',
+  'image/png',
+  'image/webp',
+  'image/tiff',
+  'image/gif',
+  'image/heic',
+  'image/heif',
+  'image/avif',
+]);
 
 /** A photo opened for measuring; pixels are decoded on demand, upright, 8-bit sRGB. */
 export interface OpenPhoto {
@@ -50,11 +59,13 @@ export async function openPhoto(bytes: Uint8Array): Promise<OpenOutcome> {
   if (type.mime === 'image/heic' || type.mime === 'image/heif') {
     const decoded = await decodeHeic(bytes);
     if (decoded === null) return refused('not-a-photo', 'the HEIC photo cannot be decoded; it is damaged or cut short');
-    if (decoded === 'too-many-pixels') return refused('too-many-pixels', `the photo has more than ${MOST_PIXELS / 1e6} megapixels`);
+    if (decoded === 'too-many-pixels')
+      return refused('too-many-pixels', `the photo has more than ${MOST_PIXELS / 1e6} megapixels`);
     input = decoded.data;
     raw = { width: decoded.width, height: decoded.height, channels: 4 };
   }
-  const base = () => sharp(input, { limitInputPixels: MOST_PIXELS, failOn: 'warning', ...(raw === undefined ? {} : { raw }) });
+  const base = () =>
+    sharp(input, { limitInputPixels: MOST_PIXELS, failOn: 'warning', ...(raw === undefined ? {} : { raw }) });
   let widthPx: number;
   let heightPx: number;
   try {
@@ -75,7 +86,7 @@ export async function openPhoto(bytes: Uint8Array): Promise<OpenOutcome> {
     );
   }
   const upright = () => base().autoOrient().flatten({ background: '#808080' }).toColourspace('srgb');
-  const toPicture = async (pipeline: sharp.Sharp, scale: number): Promise<Picture> => {
+  const toPicture = async (pipeline: Sharp, scale: number): Promise<Picture> => {
     const { data, info } = await pipeline.removeAlpha().raw({ depth: 'uchar' }).toBuffer({ resolveWithObject: true });
     return pictureFromRgb(rgbOf(data, info.width * info.height, info.channels), info.width, info.height, scale);
   };
@@ -94,7 +105,9 @@ export async function openPhoto(bytes: Uint8Array): Promise<OpenOutcome> {
       async part(leftPx, topPx, partWidthPx, partHeightPx, scale) {
         const window = upright().extract({ left: leftPx, top: topPx, width: partWidthPx, height: partHeightPx });
         return toPicture(
-          scale >= 1 ? window : window.resize({ width: Math.max(1, Math.round(partWidthPx * scale)), kernel: 'linear' }),
+          scale >= 1
+            ? window
+            : window.resize({ width: Math.max(1, Math.round(partWidthPx * scale)), kernel: 'linear' }),
           Math.min(1, scale),
         );
       },
@@ -120,7 +133,11 @@ async function decodeHeic(
     if (first === undefined) return null;
     if (first.width * first.height > MOST_PIXELS) return 'too-many-pixels';
     const image = await first.decode();
-    return { data: new Uint8Array(image.data.buffer, image.data.byteOffset, image.data.byteLength), width: image.width, height: image.height };
+    return {
+      data: new Uint8Array(image.data.buffer, image.data.byteOffset, image.data.byteLength),
+      width: image.width,
+      height: image.height,
+    };
   } catch {
     return null;
   }
