@@ -3,6 +3,7 @@ import type { BudgetLine, NOT_MEASURED_CODES, PlaneReading, PointPx, Warning } f
 import { measureTrace, type TraceMeasurement, USUAL_CAMERA_DISTANCE_RADII } from './budget.ts';
 import { COVERAGE_FACTOR } from './byHand.ts';
 import { type Candidate, type EndOfHalf, findCandidates, findHalves, type HalfCandidate } from './candidates.ts';
+import { centreOfGap } from './centreOfGap.ts';
 import { searchPairTrace } from './pairTrace.ts';
 import type { Picture } from './picture.ts';
 import { LEAST_PX_ACROSS, type PhotoQuality, qualityOf, WANTED_PX_ACROSS } from './quality.ts';
@@ -52,6 +53,8 @@ interface Measured {
 }
 
 const FINEST_STEP = 1 / 150;
+/** How far from the path the lips of its gap are looked for, radii. */
+const CENTRE_REACH = 0.22;
 
 /**
  * Measures the fracture plane in a picture: candidates for the specimen, the trace of each, the best of them at
@@ -145,7 +148,7 @@ function measurePair(picture: Picture, candidate: Candidate, options: PictureOpt
     gapSizes: [3, 5, 9, 17],
     near: { points: rough.points, reachRadii: 0.25 },
   });
-  const points = (fine ?? rough).points;
+  const points = fine === null ? rough.points : centreOfGap(fine.map, fine.points, CENTRE_REACH).points;
   return finish(
     picture,
     'pair',
