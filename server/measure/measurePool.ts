@@ -1,0 +1,103 @@
+import { createHash } from 'node:crypto';
+import { existsSync } from 'node:fs';
+import { readFile } from 'node:fs/promises';
+import { availableParallelism, totalmem } from 'node:os';
+import { fileURLToPath } from 'node:url';
+import { Piscina } from 'piscina';
+import type { MeasureJob, MeasurePool } from '../../src/photo/measurement.ts';
+import type { PhotoMeasurement, PhotoNotMeasured } from '../../src/records/reading.ts';
+
+/** Memory one measurement may take at its largest: the decoded photo, its working copies and the worker itself, MB. */
+const MEMORY_A_WORKER_MB = 900;
+/** Share of the machine's memory that measuring may take. */
+const MEMORY_SHARE = 0.5;
+/** Largest heap of a worker, MB; a worker that wants more is ended and its photo not measured. */
+const HEAP_A_WORKER_MB = 1024;
+/** A photo that takes longer is given up, ms: the usual one takes well below a second. */
+const LONGEST_MEASUREMENT_MS = 120_000;
+/** A worker with nothing to do is ended after this, ms. */
+const IDLE_MS = 60_000;
+
+export interface MeasurePoolOptions {
+  /** Number of workers; by default as many as cores and memory allow. */
+  readonly size?: number;
+  /** The worker's entry; by default the one that measures photos. For tests of the pool itself. */
+  readonly workerUrl?: URL;
+  readonly longestMeasurementMs?: number;
+}
+
+/** As many workers as there are cores, but never more than fit into half the memory of the machine; at least 1. */
+export function poolSize(cores: number, memoryBytes: number): number {
+  const fitting = Math.floor((memoryBytes * MEMORY_SHARE) / (MEMORY_A_WORKER_MB * 1024 * 1024));
+  return Math.max(1, Math.min(cores, fitting));
+}
+
+/** The built worker lies beside this module; from source it is the TypeScript file itself, run through tsx. */
+function workerEntry(): URL {
+  const built = new URL('./measureWorker.js', import.meta.url);
+  if (existsSync(fileURLToPath(built))) return built;
+  return new URL('../../src/photo/node/measureWorker.ts', import.meta.url);
+}
+
+async function sha256Of(path: string): Promise<string> {
+  try {
+    return createHash('sha256')
+      .update(await readFile(path))
+      .digest('hex');
+  } catch {
+    return '';
+  }
+}
+
+async function fault(path: string, message: string, startedMs: number): Promise<PhotoNotMeasured> {
+  return {
+    outcome: 'not-measured',
+    reason: { code: 'fault', message },
+    sha256: await sha256Of(path),
+    elapsedMs: Math.round(performance.now() - startedMs),
+    warnings: [],
+  };
+}
+
+/**
+ * Starts a pool of measuring workers. Whatever happens in a worker (an exception, running out of memory, a crash, no end)
+ * costs only its own photo, which then is `not-measured` with code `fault`.
+ */
+export function createMeasurePool(options: MeasurePoolOptions = {}): MeasurePool {
+  const entry = options.workerUrl ?? workerEntry();
+  const longestMs = options.longestMeasurementMs ?? LONGEST_MEASUREMENT_MS;
+  const piscina = new Piscina<MeasureJob, PhotoMeasurement>({
+    filename: entry.href,
+    minThreads: 0,
+    maxThreads: options.size ?? poolSize(availableParallelism(), totalmem()),
+    idleTimeout: IDLE_MS,
+    resourceLimits: { maxOldGenerationSizeMb: HEAP_A_WORKER_MB },
+    ...(entry.pathname.endsWith('.ts') && { execArgv: ['--import', 'tsx'] }),
+  });
+  // A worker that dies is replaced; its photo gets its answer below.
+  piscina.on('error', () => {});
+  return {
+    async measure(job) {
+      const startedMs = performance.now();
+      const giveUp = new AbortController();
+      let timer: NodeJS.Timeout | undefined;
+      const run = piscina.run(job, { signal: giveUp.signal });
+      timer = setTimeout(() => giveUp.abort(), longestMs);
+      try {
+        return await run;
+      } catch (error) {
+        const why = giveUp.signal.aborted
+          ? `it took longer than ${longestMs / 1000} s`
+          : error instanceof Error
+            ? error.message
+            : String(error);
+        return fault(job.path, `measuring this photo failed: ${why}; measure it by hand`, startedMs);
+      } finally {
+        clearTimeout(timer);
+      }
+    },
+    async close() {
+      await piscina.destroy();
+    },
+  };
+}
