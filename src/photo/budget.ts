@@ -3,9 +3,33 @@ import type { BudgetLine } from '../records/reading.ts';
 import { type CameraBow, fitTrace, type TraceFit } from './traceFit.ts';
 import { type PhotoPoint, type SpecimenFrame, toSurface } from './unroll.ts';
 
-/** Camera distance assumed when nothing tells it: "a good ten diameters" (design 3b), in radii, ± 40 %. */
-export const USUAL_CAMERA_DISTANCE_RADII = 25;
-const CAMERA_DISTANCE_RELATIVE_U = 0.4;
+/**
+ * Focal length over the long side of the photo when nothing tells it: between a telephone's main lens (0.7) and a
+ * camera's close-up lens (2.8), so 1.4, and a factor of 1.5 for its standard uncertainty (common practice).
+ */
+export const USUAL_FOCAL_OVER_LONG_SIDE = 1.4;
+const FOCAL_UNCERTAINTY_FACTOR = 1.5;
+/** The same when the photo itself states its focal length: lens data are rounded, crops are not told. */
+const STATED_FOCAL_UNCERTAINTY_FACTOR = 1.15;
+
+/** Distance of the camera from the axis in radii, known to a factor. */
+export interface CameraDistance {
+  readonly radii: number;
+  /** Standard uncertainty as a factor, > 1. */
+  readonly factor: number;
+}
+
+/**
+ * A pinhole camera shows a radius of `radiusPx` at a distance of f/radiusPx radii, f the focal length in px.
+ * @param focalOverLongSide as the photo states it, e.g. 35-mm-equivalent focal length over 36 mm; null when it does not
+ */
+export function cameraDistance(radiusPx: number, longSidePx: number, focalOverLongSide: number | null): CameraDistance {
+  const focalPx = (focalOverLongSide ?? USUAL_FOCAL_OVER_LONG_SIDE) * longSidePx;
+  return {
+    radii: Math.max(4, focalPx / radiusPx),
+    factor: focalOverLongSide === null ? FOCAL_UNCERTAINTY_FACTOR : STATED_FOCAL_UNCERTAINTY_FACTOR,
+  };
+}
 
 /** How well the frame is known, standard uncertainties. */
 export interface FrameUncertainty {
@@ -16,6 +40,8 @@ export interface FrameUncertainty {
   readonly centreRadii: number;
   /** Of the taper, px per px. Infinity when the taper was not measured. */
   readonly taper: number;
+  /** Of the camera's distance, as a factor (> 1). */
+  readonly cameraDistanceFactor: number;
 }
 
 export interface TraceMeasurement {
@@ -33,20 +59,21 @@ export interface TraceMeasurement {
  */
 export function cameraBow(
   frame: SpecimenFrame,
-  taperUncertainty: number,
+  uncertainty: Pick<FrameUncertainty, 'taper' | 'cameraDistanceFactor'>,
   offsetRadii: number,
   tiltStandardUncertaintyDeg: number,
 ): CameraBow {
-  const k = Number.isFinite(frame.cameraDistanceRadii) ? frame.cameraDistanceRadii : USUAL_CAMERA_DISTANCE_RADII;
+  const k = frame.cameraDistanceRadii;
+  const distanceU = Math.log(uncertainty.cameraDistanceFactor);
   const prior = Math.sin(degToRad(tiltStandardUncertaintyDeg));
   const fromTaper = -frame.taper * k;
-  const uTaper = Math.hypot(k * taperUncertainty, CAMERA_DISTANCE_RELATIVE_U * fromTaper, 0.01);
+  const uTaper = Math.hypot(k * uncertainty.taper, distanceU * fromTaper, 0.01);
   const weight = Number.isFinite(uTaper) ? 1 / (uTaper * uTaper) : 0;
   const total = weight + 1 / (prior * prior);
   const side = offsetRadii / k;
   return {
     mean: (weight * fromTaper) / total,
-    sigma: Math.hypot(1 / Math.sqrt(total), CAMERA_DISTANCE_RELATIVE_U * side),
+    sigma: Math.hypot(1 / Math.sqrt(total), distanceU * side),
   };
 }
 
@@ -68,7 +95,7 @@ export function measureTrace(input: {
     const surface = tracePx.map((p) => toSurface(f, p));
     const middle = surface.reduce((sum, p) => sum + p.x, 0) / Math.max(1, surface.length);
     const offset = middle - f.cameraAlongRadii;
-    const bow = cameraBow(f, u.taper, offset, input.cameraTiltStandardUncertaintyDeg);
+    const bow = cameraBow(f, u, offset, input.cameraTiltStandardUncertaintyDeg);
     return fitTrace(surface, { mean: bow.mean + bowShift, sigma: bow.sigma }, input.independentLimit);
   };
   const fit = fitWith(frame);
@@ -94,12 +121,10 @@ export function measureTrace(input: {
     },
   });
   const k = frame.cameraDistanceRadii;
-  const distance = Number.isFinite(k)
-    ? larger(
-        { ...frame, cameraDistanceRadii: k * (1 + CAMERA_DISTANCE_RELATIVE_U) },
-        { ...frame, cameraDistanceRadii: Math.max(4, k / (1 + CAMERA_DISTANCE_RELATIVE_U)) },
-      )
-    : change(fitWith({ ...frame, cameraDistanceRadii: USUAL_CAMERA_DISTANCE_RADII }));
+  const distance = larger(
+    { ...frame, cameraDistanceRadii: k * u.cameraDistanceFactor },
+    { ...frame, cameraDistanceRadii: Math.max(3, k / u.cameraDistanceFactor) },
+  );
 
   const tangent = Math.abs(Math.tan(degToRad(Math.min(89, Math.abs(fit.planeAngleDeg)))));
   const tilt = Math.sin(degToRad(input.cameraTiltStandardUncertaintyDeg)) ** 2 / 2;
@@ -140,7 +165,12 @@ export function measureTrace(input: {
       'B',
       `camera out of square by ${input.cameraTiltStandardUncertaintyDeg}° (standard uncertainty)`,
     ),
-    line('camera-distance', distance, 'B', 'camera about ten diameters away or more, perspective of the visible face'),
+    line(
+      'camera-distance',
+      distance,
+      'B',
+      `camera ${(k / 2).toFixed(0)} diameters away, known to a factor of ${u.cameraDistanceFactor}`,
+    ),
     line('pixel-sampling', sampling, 'B', `a trace point is placed to ${input.pointUncertaintyPx.toFixed(2)} px`),
     line('model-choice', fit.modelUncertaintyDeg, 'B', 'difference between shapes that fit about as well'),
   ];

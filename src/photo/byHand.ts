@@ -1,7 +1,7 @@
 import { handOfPlaneAngle } from '../angle.ts';
 import { LabError } from '../errors.ts';
 import type { BudgetLine, PlaneReading, PointPx, Warning } from '../records/reading.ts';
-import { measureTrace, USUAL_CAMERA_DISTANCE_RADII } from './budget.ts';
+import { cameraDistance, measureTrace } from './budget.ts';
 import { frameFromAxis, type PhotoPoint, toPhoto } from './unroll.ts';
 
 /** Coverage factor of every expanded uncertainty stated here (GUM 6.3.3: about 95 %). */
@@ -17,6 +17,8 @@ export interface ByHandInput {
   readonly heightPx: number;
   /** Standard uncertainty of the camera's squareness, degrees; default 1.5 (± 3°, k = 2). */
   readonly cameraTiltStandardUncertaintyDeg?: number;
+  /** Focal length over the long side of the photo, where the photo states it. */
+  readonly focalOverLongSide?: number | null;
 }
 
 export interface ByHandMeasurement extends PlaneReading {
@@ -61,8 +63,13 @@ export function measureByHand(input: ByHandInput): ByHandMeasurement {
       value: input.tracePx.length,
     });
   }
+  const distance = cameraDistance(
+    input.diameterPx / 2,
+    Math.max(input.widthPx, input.heightPx),
+    input.focalOverLongSide ?? null,
+  );
   const frame = frameFromAxis(point(from), point(to), input.diameterPx, {
-    cameraDistanceRadii: USUAL_CAMERA_DISTANCE_RADII,
+    cameraDistanceRadii: distance.radii,
     photoMiddlePx: { xPx: (input.widthPx - 1) / 2, yPx: (input.heightPx - 1) / 2 },
   });
   const placedPx = Math.max(2, 0.01 * input.diameterPx);
@@ -73,6 +80,7 @@ export function measureByHand(input: ByHandInput): ByHandMeasurement {
       radiusRelative: placedPx / input.diameterPx,
       centreRadii: placedPx / input.diameterPx,
       taper: Number.POSITIVE_INFINITY,
+      cameraDistanceFactor: distance.factor,
     },
     tracePx: input.tracePx.map(point),
     cameraTiltStandardUncertaintyDeg: input.cameraTiltStandardUncertaintyDeg ?? 1.5,

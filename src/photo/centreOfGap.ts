@@ -37,7 +37,7 @@ export function centreOfGap(map: UnrolledMap, path: readonly SurfacePoint[], rea
     const normal = { x: (b.phi - a.phi) / length, phi: -(b.x - a.x) / length };
     directions.push(normal);
     const p = path[i] as SurfacePoint;
-    if (!sampleLine(map, p, normal, step, half, profile)) continue;
+    if (!sampleLine(map, path, i, normal, step, half, profile)) continue;
     const lips = lipsOf(profile, away, half);
     if (lips === null) continue;
     shifts[i] = ((lips.low + lips.high) / 2 - half) * step;
@@ -67,31 +67,42 @@ export function centreOfGap(map: UnrolledMap, path: readonly SurfacePoint[], rea
   };
 }
 
+/** Mean colour along the normal, over a few neighbouring points of the path: lips run on, noise does not. */
 function sampleLine(
   map: UnrolledMap,
-  p: SurfacePoint,
+  path: readonly SurfacePoint[],
+  index: number,
   normal: { x: number; phi: number },
   step: number,
   half: number,
   out: readonly [Float64Array, Float64Array, Float64Array],
 ): boolean {
   const { columns, rows, stepRadii } = map;
-  for (let k = -half; k <= half; k++) {
-    const c = (p.x + k * step * normal.x - map.firstX) / stepRadii;
-    const r = (p.phi + k * step * normal.phi - map.firstPhi) / stepRadii;
-    // Beyond the searched face the last row is repeated: the ends of the trace keep their lips.
-    const rr = Math.max(0, Math.min(rows - 1.001, r));
-    if (c < 0 || c > columns - 1.001) return false;
-    const c0 = c | 0;
-    const r0 = rr | 0;
-    const fc = c - c0;
-    const fr = rr - r0;
-    const i = r0 * columns + c0;
-    for (let m = 0; m < 3; m++) {
-      const plane = map.planes[m as 0 | 1 | 2];
-      const top = (plane[i] as number) * (1 - fc) + (plane[i + 1] as number) * fc;
-      const low = (plane[i + columns] as number) * (1 - fc) + (plane[i + columns + 1] as number) * fc;
-      (out[m as 0 | 1 | 2] as Float64Array)[k + half] = top * (1 - fr) + low * fr;
+  for (const plane of out) plane.fill(0);
+  const p = path[index] as SurfacePoint;
+  const side = 1;
+  for (let t = -side; t <= side; t++) {
+    // Along the tangent, not along the stairs of the path.
+    const px = p.x - t * normal.phi * stepRadii;
+    const pphi = p.phi + t * normal.x * stepRadii;
+    for (let k = -half; k <= half; k++) {
+      const c = (px + k * step * normal.x - map.firstX) / stepRadii;
+      const r = (pphi + k * step * normal.phi - map.firstPhi) / stepRadii;
+      // Beyond the searched face the last row is repeated: the ends of the trace keep their lips.
+      const rr = Math.max(0, Math.min(rows - 1.001, r));
+      if (c < 0 || c > columns - 1.001) return false;
+      const c0 = c | 0;
+      const r0 = rr | 0;
+      const fc = c - c0;
+      const fr = rr - r0;
+      const i = r0 * columns + c0;
+      for (let m = 0; m < 3; m++) {
+        const plane = map.planes[m as 0 | 1 | 2];
+        const top = (plane[i] as number) * (1 - fc) + (plane[i + 1] as number) * fc;
+        const low = (plane[i + columns] as number) * (1 - fc) + (plane[i + columns + 1] as number) * fc;
+        const to = out[m as 0 | 1 | 2] as Float64Array;
+        to[k + half] = (to[k + half] as number) + (top * (1 - fr) + low * fr) / (2 * side + 1);
+      }
     }
   }
   return true;
@@ -130,28 +141,32 @@ function lipsOf(
     }
   }
   if (depth < 16) return null;
+  // The gap shows its walls, lit or in shade: a lip is where the surface's own colour begins, not where the dark ends.
+  const pixel = 2;
   const crossing = (towards: -1 | 1): number | null => {
-    let size = 0;
-    for (const m of [0, 1, 2] as const) {
-      const s = towards === -1 ? (side[m]?.low ?? 0) : (side[m]?.high ?? 0);
-      size += (s - (profile[m][bottom] as number)) ** 2;
+    const level = ([0, 1, 2] as const).map((m) => (towards === -1 ? (side[m]?.low ?? 0) : (side[m]?.high ?? 0)));
+    let total = 0;
+    for (let k = 0; k < n; k++) {
+      let d = 0;
+      for (const m of [0, 1, 2] as const) d += ((profile[m][k] as number) - (level[m] as number)) ** 2;
+      away[k] = Math.sqrt(d);
     }
-    // Share of the way from gap to surface, by projection on the colour difference.
-    const share = (k: number) => {
-      let dot = 0;
-      for (const m of [0, 1, 2] as const) {
-        const s = towards === -1 ? (side[m]?.low ?? 0) : (side[m]?.high ?? 0);
-        dot += (s - (profile[m][bottom] as number)) * ((profile[m][k] as number) - (profile[m][bottom] as number));
-      }
-      return dot / size;
-    };
-    let before = 0;
-    for (let k = bottom + towards; k >= 0 && k < n; k += towards) {
-      const v = share(k);
-      if (v >= 0.5) return k - towards * ((v - 0.5) / Math.max(1e-6, v - before));
-      before = v;
-    }
-    return null;
+    for (let k = 0; k < outer; k++) total += (away[towards === -1 ? k : n - 1 - k] as number) ** 2;
+    const scatter = Math.sqrt(total / outer);
+    const limit = Math.max(4, 2 * scatter, 0.2 * (away[bottom] as number));
+    let k = bottom;
+    while (k > 0 && k < n - 1 && ((away[k] as number) > limit || (away[k + towards] as number) > limit)) k += towards;
+    if (k <= 0 || k >= n - 1) return null;
+    // Half of the step from the surface to what lies just inside the lip.
+    let inside = 0;
+    for (let q = k; q !== bottom && Math.abs(q - k) <= 3 * pixel; q -= towards)
+      inside = Math.max(inside, away[q] as number);
+    const target = inside / 2;
+    let q = k;
+    while (q !== bottom && (away[q] as number) < target) q -= towards;
+    const at = away[q] as number;
+    const next = away[q + towards] as number;
+    return at > next ? q + towards * Math.min(1, (at - target) / (at - next)) : q;
   };
   const low = crossing(-1);
   const high = crossing(1);

@@ -1,6 +1,6 @@
 import { handOfPlaneAngle } from '../angle.ts';
 import type { BudgetLine, NOT_MEASURED_CODES, PlaneReading, PointPx, Warning } from '../records/reading.ts';
-import { measureTrace, type TraceMeasurement, USUAL_CAMERA_DISTANCE_RADII } from './budget.ts';
+import { cameraDistance, type FrameUncertainty, measureTrace, type TraceMeasurement } from './budget.ts';
 import { COVERAGE_FACTOR } from './byHand.ts';
 import { type Candidate, type EndOfHalf, findCandidates, findHalves, type HalfCandidate } from './candidates.ts';
 import { centreOfGap } from './centreOfGap.ts';
@@ -17,6 +17,8 @@ export interface PictureOptions {
   /** Standard uncertainty of the camera's squareness, degrees. */
   readonly cameraTiltStandardUncertaintyDeg: number;
   /** Told what was decided and on what figures, for `--debug`. */
+  /** Focal length over the long side of the photo, where the photo states it. */
+  readonly focalOverLongSide?: number | null;
   readonly onNote?: (topic: string, figures: unknown) => void;
 }
 
@@ -111,16 +113,19 @@ function acceptedPair(candidates: readonly Candidate[]): Candidate | null {
   return best.trace.costPerRow < CLEAR_COST && best.trace.missingShare < MOST_MISSING ? best : null;
 }
 
-function fineFrame(picture: Picture, candidate: Candidate) {
+function fineFrame(picture: Picture, candidate: Candidate, options: PictureOptions) {
   const start = candidate.frame;
   const fromPx = candidate.fromX * start.radiusPx;
   const toPx = candidate.toX * start.radiusPx;
   const fine = refineFrame(picture, start, fromPx, toPx, Math.max(3, 0.05 * start.radiusPx));
   const refined = fine ?? candidate.refined;
-  const frame: SpecimenFrame = {
-    ...(fine?.frame ?? start),
-    cameraDistanceRadii: USUAL_CAMERA_DISTANCE_RADII,
-  };
+  const found = fine?.frame ?? start;
+  const distance = cameraDistance(
+    found.radiusPx,
+    Math.max(picture.widthPx, picture.heightPx),
+    options.focalOverLongSide ?? null,
+  );
+  const frame: SpecimenFrame = { ...found, cameraDistanceRadii: distance.radii };
   const middleX = (picture.widthPx - 1) / 2 - frame.originPx.xPx;
   const middleY = (picture.heightPx - 1) / 2 - frame.originPx.yPx;
   return {
@@ -130,6 +135,7 @@ function fineFrame(picture: Picture, candidate: Candidate) {
       radiusRelative: refined?.radiusRelativeUncertainty ?? 0.02,
       centreRadii: refined?.centreUncertaintyRadii ?? 0.02,
       taper: refined?.taperUncertainty ?? 0.01,
+      cameraDistanceFactor: distance.factor,
     },
   };
 }
@@ -137,7 +143,7 @@ function fineFrame(picture: Picture, candidate: Candidate) {
 function measurePair(picture: Picture, candidate: Candidate, options: PictureOptions): Measured | null {
   const rough = candidate.trace;
   if (rough === null) return null;
-  const { frame, uncertainty } = fineFrame(picture, candidate);
+  const { frame, uncertainty } = fineFrame(picture, candidate, options);
   const xs = rough.points.map((p) => p.x);
   const stepRadii = Math.max(FINEST_STEP, 1 / frame.radiusPx);
   const parallel = { ...frame, cameraDistanceRadii: Number.POSITIVE_INFINITY };
@@ -166,7 +172,7 @@ function finish(
   _picture: Picture,
   view: 'pair' | 'half',
   frame: SpecimenFrame,
-  uncertainty: { axisDeg: number; radiusRelative: number; centreRadii: number; taper: number },
+  uncertainty: FrameUncertainty,
   candidate: Candidate,
   tracePx: readonly PhotoPoint[],
   points: readonly SurfacePoint[],
@@ -269,7 +275,7 @@ function measureRim(
   rim: { readonly points: readonly SurfacePoint[] },
   options: PictureOptions,
 ): Measured | null {
-  const { frame, uncertainty } = fineFrame(picture, candidate);
+  const { frame, uncertainty } = fineFrame(picture, candidate, options);
   const stepRadii = Math.max(FINEST_STEP, 1 / frame.radiusPx);
   const parallel = { ...frame, cameraDistanceRadii: Number.POSITIVE_INFINITY };
   const points = refineRim(picture, parallel, rim.points, stepRadii, 0.12) ?? rim.points;
