@@ -43,42 +43,109 @@ function valueOfPair(hypothesis: SpecimenHypothesis, refined: RefinedFrame | nul
 
 /** Candidates of a photo, best pair first. */
 export function findCandidates(picture: Picture): Candidate[] {
-  const candidates: Candidate[] = [];
-  const levels = new Map<number, Picture>();
-  const level = (factor: number): Picture => {
-    const known = levels.get(factor);
+  const levels = levelsOf(picture);
+  const candidates = detectSpecimens(picture, MOST_HYPOTHESES)
+    .map((hypothesis) => candidateOf(levels, hypothesis))
+    .sort((a, b) => b.pairValue - a.pairValue);
+  const first = candidates[0];
+  if (first === undefined) return candidates;
+  const whole = widened(first, candidates, levels);
+  return whole === first ? candidates : [whole, ...candidates];
+}
+
+type Levels = (factor: number) => Picture;
+
+function levelsOf(picture: Picture): Levels {
+  const made = new Map<number, Picture>();
+  return (factor) => {
+    const known = made.get(factor);
     if (known !== undefined) return known;
-    const made = shrink(picture, factor);
-    levels.set(factor, made);
-    return made;
+    const picked = shrink(picture, factor);
+    made.set(factor, picked);
+    return picked;
   };
-  for (const hypothesis of detectSpecimens(picture, MOST_HYPOTHESES)) {
-    const factor = Math.max(1, Math.floor(hypothesis.frame.radiusPx / COMPARED_RADIUS_PX));
-    const small = level(factor);
-    const start = scaleFrame(hypothesis.frame, 1 / factor);
-    const fromPx = hypothesis.fromPx / factor;
-    const toPx = hypothesis.toPx / factor;
-    const refined = refineFrame(small, start, fromPx, toPx, Math.max(2.5, 0.12 * start.radiusPx));
-    const frame = refined?.frame ?? start;
-    const fromX = fromPx / frame.radiusPx;
-    const toX = toPx / frame.radiusPx;
-    const trace = searchPairTrace(small, frame, {
-      fromX,
-      toX,
-      stepRadii: Math.max(1 / COMPARED_RADIUS_PX, 1 / frame.radiusPx),
-      gapSizes: [3, 5, 9],
-    });
-    candidates.push({
-      hypothesis,
-      frame: scaleFrame(frame, factor),
-      refined,
-      fromX,
-      toX,
-      trace,
-      pairValue: valueOfPair(hypothesis, refined, trace),
-    });
+}
+
+function candidateOf(levels: Levels, hypothesis: SpecimenHypothesis): Candidate {
+  const factor = Math.max(1, Math.floor(hypothesis.frame.radiusPx / COMPARED_RADIUS_PX));
+  const small = levels(factor);
+  const start = scaleFrame(hypothesis.frame, 1 / factor);
+  const fromPx = hypothesis.fromPx / factor;
+  const toPx = hypothesis.toPx / factor;
+  const refined = refineFrame(small, start, fromPx, toPx, Math.max(2.5, 0.12 * start.radiusPx));
+  const frame = refined?.frame ?? start;
+  const fromX = fromPx / frame.radiusPx;
+  const toX = toPx / frame.radiusPx;
+  const trace = searchPairTrace(small, frame, {
+    fromX,
+    toX,
+    stepRadii: Math.max(1 / COMPARED_RADIUS_PX, 1 / frame.radiusPx),
+    gapSizes: [3, 5, 9],
+  });
+  return {
+    hypothesis,
+    frame: scaleFrame(frame, factor),
+    refined,
+    fromX,
+    toX,
+    trace,
+    pairValue: valueOfPair(hypothesis, refined, trace),
+  };
+}
+
+/**
+ * A gap runs over the whole specimen. When it runs on beyond the edges of a candidate, those edges were those of a
+ * highlight or a shade: the widest candidate that is crossed wholly, and in the same way, is the specimen. (In a
+ * shadow on the ground the gap is missing, or light where it is dark on the specimen.)
+ */
+function widened(start: Candidate, candidates: readonly Candidate[], levels: Levels): Candidate {
+  let best = start;
+  for (let round = 0; round < 3; round++) {
+    const wider = [...candidates, ...best.hypothesis.wider().map((h) => candidateOf(levels, h))]
+      .filter((c) => c !== best && contains(c.frame, best.frame) && crossedAlike(c, best))
+      .sort((a, b) => b.pairValue - a.pairValue)[0];
+    if (wider === undefined) break;
+    best = wider;
   }
-  return candidates.sort((a, b) => b.pairValue - a.pairValue);
+  return best;
+}
+
+function contains(outer: SpecimenFrame, inner: SpecimenFrame): boolean {
+  const turn = Math.abs(outer.alongX * inner.alongY - outer.alongY * inner.alongX);
+  const up =
+    (inner.originPx.xPx - outer.originPx.xPx) * outer.alongY - (inner.originPx.yPx - outer.originPx.yPx) * outer.alongX;
+  const ratio = inner.radiusPx / outer.radiusPx;
+  return turn < 0.05 && ratio < 0.93 && Math.abs(up) / outer.radiusPx + ratio < 1.06;
+}
+
+const MOST_MISSING_END = 0.12;
+
+function crossedAlike(outer: Candidate, inner: Candidate): boolean {
+  const a = outer.trace;
+  const b = inner.trace;
+  if (a === null || b === null || a.missingEnd > MOST_MISSING_END || a.costPerRow > b.costPerRow + 0.25) return false;
+  if (outer.hypothesis.score < inner.hypothesis.score - 2) return false;
+  // The rows beyond the inner candidate, and those inside it.
+  const up =
+    ((inner.frame.originPx.xPx - outer.frame.originPx.xPx) * outer.frame.alongY -
+      (inner.frame.originPx.yPx - outer.frame.originPx.yPx) * outer.frame.alongX) /
+    outer.frame.radiusPx;
+  const ratio = inner.frame.radiusPx / outer.frame.radiusPx;
+  const beyond = { n: 0, cost: 0, dark: 0 };
+  const inside = { n: 0, cost: 0, dark: 0 };
+  for (let r = 0; r < a.map.rows; r++) {
+    const height = Math.sin(a.map.firstPhi + r * a.map.stepRadii);
+    const part = Math.abs(height - up) > ratio ? beyond : inside;
+    part.n += 1;
+    part.cost += a.rowCosts[r] as number;
+    if ((a.rowDepths[r] as number) > 0) part.dark += 1;
+  }
+  if (beyond.n < 3 || inside.n < 3) return false;
+  const darkBeyond = beyond.dark / beyond.n;
+  const darkInside = inside.dark / inside.n;
+  return (
+    beyond.cost / beyond.n < Math.max(0.45, inside.cost / inside.n + 0.2) && Math.abs(darkBeyond - darkInside) < 0.5
+  );
 }
 
 /** The candidates most like a specimen, with what is seen at their ends. */

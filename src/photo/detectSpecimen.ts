@@ -1,8 +1,8 @@
-import { alignCells } from './alignedCells.ts';
+import { type AlignedCells, alignCells } from './alignedCells.ts';
 import { findEdges, findLines } from './lines.ts';
-import { findParallelEdges } from './parallelEdges.ts';
+import { type AlignedEdge, findParallelEdges } from './parallelEdges.ts';
 import { type Picture, shrink } from './picture.ts';
-import { findPairs, type SpecimenPair } from './specimenPairs.ts';
+import { findPairs, findWiderPairs, type SpecimenPair } from './specimenPairs.ts';
 import type { SpecimenFrame } from './unroll.ts';
 
 /** A place where a specimen may lie, in px of the picture given. */
@@ -13,6 +13,8 @@ export interface SpecimenHypothesis {
   readonly toPx: number;
   readonly score: number;
   readonly terms: Readonly<Record<string, number>>;
+  /** Hypotheses that contain this one, bounded by edges further out. */
+  readonly wider: () => SpecimenHypothesis[];
 }
 
 const LONG_SIDE_LINES = 800;
@@ -42,9 +44,7 @@ export function detectSpecimens(picture: Picture, most: number): SpecimenHypothe
     const grid = alignCells(forCells, direction, 10, 0.75);
     const edges = findParallelEdges(grid, 0.05, 40);
     for (const pair of findPairs(grid, edges, 24)) {
-      const fromAlong = grid.firstAlong + (pair.fromCell - 0.5) * grid.cellPx;
-      const toAlong = grid.firstAlong + (pair.toCell + 0.5) * grid.cellPx;
-      found.push(hypothesisOf(pair, grid, fromAlong, toAlong, toPicture));
+      found.push(hypothesisOf(pair, grid, edges, toPicture));
     }
   }
   found.sort((a, b) => b.score - a.score);
@@ -58,11 +58,12 @@ export function detectSpecimens(picture: Picture, most: number): SpecimenHypothe
 
 function hypothesisOf(
   pair: SpecimenPair,
-  grid: { readonly alongX: number; readonly alongY: number; readonly centreX: number; readonly centreY: number },
-  fromAlong: number,
-  toAlong: number,
+  grid: AlignedCells,
+  edges: readonly AlignedEdge[],
   k: number,
 ): SpecimenHypothesis {
+  const fromAlong = grid.firstAlong + (pair.fromCell - 0.5) * grid.cellPx;
+  const toAlong = grid.firstAlong + (pair.toCell + 0.5) * grid.cellPx;
   const middle = (fromAlong + toAlong) / 2;
   const top = pair.upper.across + pair.upper.slope * middle;
   const low = pair.lower.across + pair.lower.slope * middle;
@@ -89,6 +90,7 @@ function hypothesisOf(
     toPx: half,
     score: pair.score,
     terms: pair.terms,
+    wider: () => findWiderPairs(grid, edges, pair, 3).map((p) => hypothesisOf(p, grid, edges, k)),
   };
 }
 

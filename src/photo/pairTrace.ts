@@ -14,6 +14,10 @@ export interface PairTrace {
   readonly costs: StepCosts;
   readonly path: TracePath;
   readonly points: readonly SurfacePoint[];
+  /** Cost of each row of the map, smoothed over a few. */
+  readonly rowCosts: Float64Array;
+  /** Each row: how much darker the path is than the surface beside it, lightness units (negative: lighter). */
+  readonly rowDepths: Float64Array;
   /** Mean cost a row; 0.03 for a clear gap, near 1 for none. */
   readonly costPerRow: number;
   /** Share of the rows in which the path crosses nothing like a gap. */
@@ -75,6 +79,8 @@ function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, pat
   const points: SurfacePoint[] = [];
   const perRow = new Float64Array(map.rows);
   const counts = new Float64Array(map.rows);
+  const depths = new Float64Array(map.rows);
+  const aside = Math.max(3, Math.round(0.15 / map.stepRadii));
   for (let i = 0; i < n; i++) {
     const r = path.rows[i] as number;
     const c = path.columns[i] as number;
@@ -83,6 +89,11 @@ function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, pat
     const inRow = i > 0 && path.rows[i - 1] === r;
     perRow[r] = (perRow[r] as number) + ((inRow ? costs.along[at] : costs.across[at]) as number);
     counts[r] = (counts[r] as number) + 1;
+    const left = Math.max(0, c - aside);
+    const right = Math.min(map.columns - 1, c + aside);
+    const l = map.planes[0];
+    const base = r * map.columns;
+    depths[r] = ((l[base + left] as number) + (l[base + right] as number)) / 2 - (l[at] as number);
   }
   const smoothed = new Float64Array(map.rows);
   const reach = Math.max(1, Math.round(0.06 / map.stepRadii));
@@ -107,6 +118,8 @@ function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, pat
     costs,
     path,
     points,
+    rowCosts: smoothed,
+    rowDepths: depths,
     costPerRow: path.cost / map.rows,
     missingShare: missing / map.rows,
     missingEnd: Math.max(low, high) / map.rows,

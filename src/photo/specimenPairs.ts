@@ -26,28 +26,63 @@ const MINIMUM_WIDTH_PX = 9;
  */
 export function findPairs(grid: AlignedCells, edges: readonly AlignedEdge[], most: number): SpecimenPair[] {
   const pairs: SpecimenPair[] = [];
-  for (let i = 0; i < edges.length; i++) {
-    for (let j = 0; j < edges.length; j++) {
-      if (i === j) continue;
-      const upper = edges[i] as AlignedEdge;
-      const lower = edges[j] as AlignedEdge;
-      const fromCell = Math.max(upper.fromCell, lower.fromCell);
-      const toCell = Math.min(upper.toCell, lower.toCell);
-      if (toCell - fromCell < 2) continue;
-      const at = (cell: number) => grid.firstAlong + cell * grid.cellPx;
-      const width = (cell: number) => upper.across - lower.across + (upper.slope - lower.slope) * at(cell);
-      const w0 = width(fromCell);
-      const w1 = width(toCell);
-      const widthPx = (w0 + w1) / 2;
-      if (!(widthPx >= MINIMUM_WIDTH_PX) || widthPx > 0.75 * grid.rows * grid.stepPx) continue;
-      const lengthPx = (toCell - fromCell + 1) * grid.cellPx;
-      if (Math.abs(w1 - w0) > 0.05 * lengthPx || Math.min(w0, w1) < 0.6 * widthPx) continue;
-      if (lengthPx < 0.9 * widthPx) continue;
-      const pair = scorePair(grid, edges, upper, lower, fromCell, toCell, widthPx);
+  for (const upper of edges) {
+    for (const lower of edges) {
+      if (upper === lower) continue;
+      const pair = pairOf(grid, edges, upper, lower);
       if (pair !== null) pairs.push(pair);
     }
   }
   return pairs.sort((a, b) => b.score - a.score).slice(0, most);
+}
+
+/** Pairs that contain a pair, with an edge further out on one side or on both: the `reach` nearest ones on each side. */
+export function findWiderPairs(
+  grid: AlignedCells,
+  edges: readonly AlignedEdge[],
+  pair: SpecimenPair,
+  reach: number,
+): SpecimenPair[] {
+  const middle = grid.firstAlong + ((pair.fromCell + pair.toCell) / 2) * grid.cellPx;
+  const at = (e: AlignedEdge) => e.across + e.slope * middle;
+  const most = 1.8 * pair.widthPx;
+  const clear = (e: AlignedEdge) => e.strength / Math.sqrt(e.toCell - e.fromCell + 1) > 0.7;
+  const above = edges
+    .filter((e) => at(e) > at(pair.upper) + 1 && at(e) < at(pair.upper) + most && clear(e))
+    .sort((a, b) => at(a) - at(b));
+  const below = edges
+    .filter((e) => at(e) < at(pair.lower) - 1 && at(e) > at(pair.lower) - most && clear(e))
+    .sort((a, b) => at(b) - at(a));
+  const out: SpecimenPair[] = [];
+  for (const upper of [pair.upper, ...above.slice(0, reach)]) {
+    for (const lower of [pair.lower, ...below.slice(0, reach)]) {
+      if (upper === pair.upper && lower === pair.lower) continue;
+      const wider = pairOf(grid, edges, upper, lower);
+      if (wider !== null) out.push(wider);
+    }
+  }
+  return out;
+}
+
+function pairOf(
+  grid: AlignedCells,
+  edges: readonly AlignedEdge[],
+  upper: AlignedEdge,
+  lower: AlignedEdge,
+): SpecimenPair | null {
+  const fromCell = Math.max(upper.fromCell, lower.fromCell);
+  const toCell = Math.min(upper.toCell, lower.toCell);
+  if (toCell - fromCell < 2) return null;
+  const at = (cell: number) => grid.firstAlong + cell * grid.cellPx;
+  const width = (cell: number) => upper.across - lower.across + (upper.slope - lower.slope) * at(cell);
+  const w0 = width(fromCell);
+  const w1 = width(toCell);
+  const widthPx = (w0 + w1) / 2;
+  if (!(widthPx >= MINIMUM_WIDTH_PX) || widthPx > 0.75 * grid.rows * grid.stepPx) return null;
+  const lengthPx = (toCell - fromCell + 1) * grid.cellPx;
+  if (Math.abs(w1 - w0) > 0.05 * lengthPx || Math.min(w0, w1) < 0.6 * widthPx) return null;
+  if (lengthPx < 0.9 * widthPx) return null;
+  return scorePair(grid, edges, upper, lower, fromCell, toCell, widthPx);
 }
 
 type Colour = Float64Array;
