@@ -14,8 +14,8 @@ export interface Bar {
   readonly fromX: number;
   readonly toX: number;
   readonly fracture: Fracture | null;
-  /** Whether the second half (beyond the fracture) is there. */
-  readonly bothHalves: boolean;
+  /** Which sides of the fracture are there: a up to it, b beyond it. */
+  readonly halves: 'a' | 'b' | 'both';
   readonly material: Material;
 }
 
@@ -43,7 +43,10 @@ export class BarTracer {
   private readonly sine: number;
   private readonly breakFrom: number;
   private readonly breakTo: number;
+  private readonly startX: number;
   private readonly endX: number;
+  private readonly hasA: boolean;
+  private readonly hasB: boolean;
   // The ray in the bar's frame.
   private ox = 0;
   private oy = 0;
@@ -59,7 +62,10 @@ export class BarTracer {
     this.sine = Math.sin(yaw);
     this.breakFrom = bar.fracture?.fromX ?? Number.POSITIVE_INFINITY;
     this.breakTo = bar.fracture?.toX ?? Number.POSITIVE_INFINITY;
-    this.endX = bar.bothHalves || !bar.fracture ? bar.toX : Math.min(bar.toX, bar.fracture.toX);
+    this.hasA = bar.halves !== 'b' || !bar.fracture;
+    this.hasB = bar.halves !== 'a' || !bar.fracture;
+    this.startX = this.hasA ? bar.fromX : Math.max(bar.fromX, this.breakFrom);
+    this.endX = this.hasB ? bar.toX : Math.min(bar.toX, this.breakTo);
   }
 
   /** Turns a vector of the bar's frame into the scene's. */
@@ -84,18 +90,19 @@ export class BarTracer {
 
   private solid(x: number, y: number, z: number): boolean {
     const { bar } = this;
-    if (x < bar.fromX || x > this.endX) return false;
+    if (x < this.startX || x > this.endX) return false;
     if (bar.bore > 0 && y * y + z * z < bar.bore * bar.bore) return false;
     const fracture = bar.fracture;
-    if (!fracture || x < this.breakFrom) return true;
-    if (x > this.breakTo) return bar.bothHalves;
-    return fracture.sideA(x, y, z) < 0 || (bar.bothHalves && fracture.sideB(x, y, z) > 0);
+    if (!fracture) return true;
+    if (x < this.breakFrom) return this.hasA;
+    if (x > this.breakTo) return this.hasB;
+    return (this.hasA && fracture.sideA(x, y, z) < 0) || (this.hasB && fracture.sideB(x, y, z) > 0);
   }
 
   /** First meeting of the ray with the bar nearer than `hit.distance`; true when `hit` was replaced. */
   trace(origin: ScenePoint, directionX: number, directionY: number, directionZ: number, hit: BarHit): boolean {
     this.enter(origin, directionX, directionY, directionZ);
-    const { ox, oy, oz, dx, dy, dz, bar } = this;
+    const { ox, oy, oz, dx, dy, dz } = this;
     const a = dy * dy + dz * dz;
     const b = oy * dy + oz * dz;
     const discriminant = b * b - a * (oy * oy + oz * oz - 1);
@@ -103,15 +110,37 @@ export class BarTracer {
     const root = Math.sqrt(discriminant);
     const entry = (-b - root) / a;
     if (entry <= 0 || entry >= hit.distance) return false;
-    const exit = (-b + root) / a;
+    const exit = Math.min((-b + root) / a, hit.distance);
     const entryX = ox + entry * dx;
     const exitX = ox + exit * dx;
-    if (Math.max(entryX, exitX) < bar.fromX || Math.min(entryX, exitX) > this.endX) return false;
+    if (Math.max(entryX, exitX) < this.startX || Math.min(entryX, exitX) > this.endX) return false;
     if (this.solid(entryX, oy + entry * dy, oz + entry * dz)) {
       this.record(hit, entry, FACE.outer);
       return true;
     }
     return this.march(entry, exit, hit);
+  }
+
+  /**
+   * Whether the bar itself keeps a light from a point of its break: follows the ray from just off the surface to the
+   * outer surface. `hit` is in the bar's frame, the direction in the scene's.
+   */
+  shadesItself(hit: BarHit, lx: number, ly: number, lz: number): boolean {
+    const dx = this.cosine * lx + this.sine * ly;
+    const dy = -this.sine * lx + this.cosine * ly;
+    const lift = 0.025;
+    let x = hit.x + lift * hit.normalX;
+    let y = hit.y + lift * hit.normalY;
+    let z = hit.z + lift * hit.normalZ;
+    let step = 0.02;
+    for (let i = 0; i < 40 && y * y + z * z < 1; i++) {
+      if (this.solid(x, y, z)) return true;
+      x += step * dx;
+      y += step * dy;
+      z += step * lz;
+      step = Math.min(0.08, step * 1.25);
+    }
+    return false;
   }
 
   private solidAlong(t: number): boolean {
@@ -187,7 +216,7 @@ export class BarTracer {
     const fracture = this.bar.fracture;
     if (!fracture) return;
     const h = 0.012;
-    const onA = !this.bar.bothHalves || Math.abs(fracture.sideA(x, y, z)) <= Math.abs(fracture.sideB(x, y, z));
+    const onA = !this.hasB || (this.hasA && Math.abs(fracture.sideA(x, y, z)) <= Math.abs(fracture.sideB(x, y, z)));
     const side = (px: number, py: number, pz: number) =>
       onA ? fracture.sideA(px, py, pz) : fracture.sideB(px, py, pz);
     const gx = side(x + h, y, z) - side(x - h, y, z);
@@ -212,7 +241,7 @@ export class BarTracer {
    */
   lightPast(px: number, py: number, pz: number, lx: number, ly: number, lz: number, penumbra: number): number {
     this.enter({ x: px, y: py, z: pz }, lx, ly, lz);
-    const { ox, oy, oz, dx, dy, dz, bar } = this;
+    const { oy, oz, dy, dz, bar } = this;
     const square = dy * dy + dz * dz;
     const nearest = -(oy * dy + oz * dz) / square;
     if (nearest <= 0) return 1;
@@ -231,14 +260,15 @@ export class BarTracer {
     const { bar } = this;
     const x = this.ox + t * this.dx;
     const present =
-      smoothstep(bar.fromX - width, bar.fromX + width, x) * (1 - smoothstep(this.endX - width, this.endX + width, x));
+      smoothstep(this.startX - width, this.startX + width, x) *
+      (1 - smoothstep(this.endX - width, this.endX + width, x));
     const fracture = bar.fracture;
     if (present === 0 || !fracture || x < this.breakFrom || x > this.breakTo) return present;
     const y = this.oy + t * this.dy;
     const z = this.oz + t * this.dz;
-    const past = smoothstep(-width, width, fracture.sideA(x, y, z));
-    const second = bar.bothHalves ? smoothstep(-width, width, fracture.sideB(x, y, z)) : 0;
-    return present * Math.max(1 - past, second);
+    const first = this.hasA ? 1 - smoothstep(-width, width, fracture.sideA(x, y, z)) : 0;
+    const second = this.hasB ? smoothstep(-width, width, fracture.sideB(x, y, z)) : 0;
+    return present * Math.max(first, second);
   }
 
   /** Share of the sky a point of the bench keeps beside the bar, 0 to 1. */
@@ -252,10 +282,14 @@ export class BarTracer {
     const z = (pz - position.z) / radiusR;
     const square = Math.max(1, y * y + z * z);
     if (square > 60) return 1;
+    let start = this.startX;
     let end = this.endX;
-    if (bar.fracture && !bar.bothHalves && x > this.breakFrom)
-      end = bar.fracture.recipe.profile.x(Math.atan2(y, Math.max(z, -0.3)));
-    const length = smoothstep(bar.fromX - 0.8, bar.fromX + 0.8, x) * (1 - smoothstep(end - 0.8, end + 0.8, x));
+    if (bar.fracture) {
+      const rim = bar.fracture.recipe.profile.x(Math.atan2(y, Math.max(z, -0.3)));
+      if (!this.hasB) end = rim;
+      if (!this.hasA) start = rim;
+    }
+    const length = smoothstep(start - 0.8, start + 0.8, x) * (1 - smoothstep(end - 0.8, end + 0.8, x));
     return 1 - (0.8 * length) / square;
   }
 }

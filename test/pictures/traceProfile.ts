@@ -59,3 +59,18 @@ export function piecewise(nodes: readonly TraceNode[]): TraceProfile {
     plane: null,
   };
 }
+
+/** The same course turned round the axis by `turnRad`, as when a half does not lie in its old place. */
+export function turned(profile: TraceProfile, turnRad: number): TraceProfile {
+  if (profile.plane) {
+    const { a, b } = profile.plane;
+    const cosine = Math.cos(turnRad);
+    const sine = Math.sin(turnRad);
+    return flatCut(a * cosine + b * sine, b * cosine - a * sine);
+  }
+  return {
+    ...profile,
+    x: (phi) => profile.x(phi - turnRad),
+    steep: profile.steep.map(([from, to]) => [from + turnRad, to + turnRad] as const),
+  };
+}
