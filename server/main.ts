@@ -20,7 +20,8 @@ function portsOf(programDir: string): CliPorts {
     programDir,
     createMeasurePool,
     async openRecords(dataDir) {
-      throw new Error('the store is not part of this version');
+      const { openStore } = await import('./store/openStore.ts');
+      return openStore(dataDir);
     },
     async serve(options) {
       throw new Error('the service is not part of this version');

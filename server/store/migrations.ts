@@ -1,0 +1,139 @@
+import { type Kysely, type Migration, Migrator } from 'kysely';
+import type { StoreSchema } from './schema.ts';
+
+/** Only the builder is used, so that the same steps run on SQLite and PostgreSQL. Steps are never changed, only added. */
+const MIGRATIONS: Readonly<Record<string, Migration>> = {
+  '0001-laboratory': {
+    async up(db) {
+      await db.schema
+        .createTable('tests')
+        .addColumn('id', 'text', (c) => c.primaryKey())
+        .addColumn('specimen_id', 'text', (c) => c.notNull())
+        .addColumn('identity', 'text', (c) => c.notNull().unique())
+        .addColumn('sort_date', 'text', (c) => c.notNull())
+        .addColumn('material_key', 'text')
+        .addColumn('heat_key', 'text')
+        .addColumn('operator_key', 'text')
+        .addColumn('section', 'text', (c) => c.notNull())
+        .addColumn('search_text', 'text', (c) => c.notNull())
+        .addColumn('document', 'text', (c) => c.notNull())
+        .addColumn('version', 'integer', (c) => c.notNull())
+        .addColumn('created_at', 'text', (c) => c.notNull())
+        .addColumn('updated_at', 'text', (c) => c.notNull())
+        .addColumn('changed_by', 'text')
+        .addColumn('change_reason', 'text')
+        .addColumn('mode', 'text')
+        .addColumn('probability', 'double precision')
+        .addColumn('plane_angle_deg', 'double precision')
+        .addColumn('expanded_uncertainty_deg', 'double precision')
+        .addColumn('photo_count', 'integer', (c) => c.notNull())
+        .addColumn('reading_count', 'integer', (c) => c.notNull())
+        .addColumn('flags', 'text', (c) => c.notNull())
+        .addColumn('flag_count', 'integer', (c) => c.notNull())
+        .addColumn('assessed_with', 'text', (c) => c.notNull())
+        .execute();
+      await db.schema.createIndex('tests_by_date').on('tests').columns(['sort_date', 'id']).execute();
+      await db.schema
+        .createIndex('tests_by_material')
+        .on('tests')
+        .columns(['material_key', 'sort_date', 'id'])
+        .execute();
+      await db.schema.createIndex('tests_by_heat').on('tests').columns(['heat_key', 'sort_date', 'id']).execute();
+      await db.schema.createIndex('tests_by_mode').on('tests').columns(['mode', 'sort_date', 'id']).execute();
+      await db.schema.createIndex('tests_by_text').on('tests').columns(['search_text', 'sort_date', 'id']).execute();
+      await db.schema.createIndex('tests_by_change').on('tests').columns(['updated_at', 'id']).execute();
+
+      await db.schema
+        .createTable('test_versions')
+        .addColumn('test_id', 'text', (c) => c.notNull().references('tests.id'))
+        .addColumn('version', 'integer', (c) => c.notNull())
+        .addColumn('document', 'text', (c) => c.notNull())
+        .addColumn('made_at', 'text', (c) => c.notNull())
+        .addColumn('made_by', 'text')
+        .addColumn('reason', 'text')
+        .addPrimaryKeyConstraint('test_versions_key', ['test_id', 'version'])
+        .execute();
+
+      await db.schema
+        .createTable('readings')
+        .addColumn('id', 'text', (c) => c.primaryKey())
+        .addColumn('test_id', 'text', (c) => c.notNull().references('tests.id'))
+        .addColumn('method', 'text', (c) => c.notNull())
+        .addColumn('engine_version', 'text')
+        .addColumn('photo_sha256', 'text')
+        .addColumn('instrument', 'text')
+        .addColumn('operator', 'text')
+        .addColumn('remarks', 'text')
+        .addColumn('created_at', 'text', (c) => c.notNull())
+        .addColumn('set_aside', 'integer', (c) => c.notNull())
+        .addColumn('result', 'text', (c) => c.notNull())
+        .execute();
+      await db.schema.createIndex('readings_of_test').on('readings').columns(['test_id', 'id']).execute();
+
+      await db.schema
+        .createTable('reading_marks')
+        .addColumn('id', 'text', (c) => c.primaryKey())
+        .addColumn('reading_id', 'text', (c) => c.notNull().references('readings.id'))
+        .addColumn('set_aside', 'integer', (c) => c.notNull())
+        .addColumn('made_at', 'text', (c) => c.notNull())
+        .addColumn('made_by', 'text')
+        .addColumn('reason', 'text')
+        .execute();
+      await db.schema.createIndex('marks_of_reading').on('reading_marks').columns(['reading_id', 'id']).execute();
+
+      await db.schema
+        .createTable('photos')
+        .addColumn('id', 'text', (c) => c.primaryKey())
+        .addColumn('sha256', 'text', (c) => c.notNull())
+        .addColumn('test_id', 'text', (c) => c.references('tests.id'))
+        .addColumn('file_name', 'text', (c) => c.notNull())
+        .addColumn('media_type', 'text', (c) => c.notNull())
+        .addColumn('bytes', 'bigint', (c) => c.notNull())
+        .addColumn('width_px', 'integer')
+        .addColumn('height_px', 'integer')
+        .addColumn('added_at', 'text', (c) => c.notNull())
+        .execute();
+      await db.schema.createIndex('photos_of_test').on('photos').columns(['test_id', 'sha256']).unique().execute();
+      await db.schema.createIndex('photos_by_content').on('photos').columns(['sha256']).execute();
+
+      await db.schema
+        .createTable('measuring')
+        .addColumn('id', 'text', (c) => c.primaryKey())
+        .addColumn('photo_sha256', 'text', (c) => c.notNull())
+        .addColumn('test_id', 'text', (c) => c.notNull().references('tests.id'))
+        .addColumn('state', 'text', (c) => c.notNull())
+        .addColumn('priority', 'integer', (c) => c.notNull())
+        .addColumn('tries', 'integer', (c) => c.notNull())
+        .addColumn('reason', 'text')
+        .addColumn('queued_at', 'text', (c) => c.notNull())
+        .addColumn('started_at', 'text')
+        .addColumn('ended_at', 'text')
+        .execute();
+      await db.schema.createIndex('measuring_next').on('measuring').columns(['state', 'priority', 'id']).execute();
+      await db.schema.createIndex('measuring_of_photo').on('measuring').columns(['test_id', 'photo_sha256']).execute();
+
+      await db.schema
+        .createTable('imports')
+        .addColumn('id', 'text', (c) => c.primaryKey())
+        .addColumn('file_name', 'text', (c) => c.notNull())
+        .addColumn('dry_run', 'integer', (c) => c.notNull())
+        .addColumn('started_at', 'text', (c) => c.notNull())
+        .addColumn('ended_at', 'text', (c) => c.notNull())
+        .addColumn('summary', 'text', (c) => c.notNull())
+        .execute();
+
+      await db.schema
+        .createTable('settings')
+        .addColumn('name', 'text', (c) => c.primaryKey())
+        .addColumn('value', 'text', (c) => c.notNull())
+        .execute();
+    },
+  },
+};
+
+/** Brings a database to the newest form. @throws the error of the step that failed; that step left nothing behind */
+export async function migrateToLatest(db: Kysely<StoreSchema>): Promise<void> {
+  const migrator = new Migrator({ db, provider: { getMigrations: async () => ({ ...MIGRATIONS }) } });
+  const { error } = await migrator.migrateToLatest();
+  if (error) throw error;
+}
