@@ -74,6 +74,8 @@ export function measurePicture(picture: Picture, options: PictureOptions): Pictu
       cost: c.trace?.costPerRow,
       missing: c.trace?.missingShare,
       missingEnd: c.trace?.missingEnd,
+      sides: c.trace?.sidesUnlike,
+      gap: c.trace?.gapUnlike,
     })),
   );
   const first = candidates[0];
@@ -104,13 +106,21 @@ function refuse(
   return { outcome: 'not-measured', reason: { code, message }, warnings: [], ...where };
 }
 
-const CLEAR_COST = 0.62;
-const MOST_MISSING = 0.35;
+/** Cost a row beyond which nothing is taken for a gap, and the share of rows that may show none. */
+const MOST_COST = 0.72;
+const MOST_MISSING = 0.5;
+/** The gap must differ from the surface beside it by this, lightness units, and more than its two sides from each other. */
+const LEAST_GAP = 7;
+const GAP_OVER_SIDES = 1.3;
 
 function acceptedPair(candidates: readonly Candidate[]): Candidate | null {
-  const best = candidates[0];
-  if (best === undefined || best.trace === null) return null;
-  return best.trace.costPerRow < CLEAR_COST && best.trace.missingShare < MOST_MISSING ? best : null;
+  const trace = candidates[0]?.trace ?? null;
+  if (trace === null) return null;
+  const { costPerRow, missingShare, gapUnlike, sidesUnlike, missingEnd } = trace;
+  if (costPerRow > MOST_COST || missingShare > MOST_MISSING || missingEnd > 0.3) return null;
+  // A split along the axis leaves no rows to compare its sides in.
+  if (gapUnlike > 0 && (gapUnlike < LEAST_GAP || gapUnlike < GAP_OVER_SIDES * sidesUnlike)) return null;
+  return candidates[0] ?? null;
 }
 
 function fineFrame(picture: Picture, candidate: Candidate, options: PictureOptions) {

@@ -1,4 +1,5 @@
 import { type GapEvidence, gapEvidence } from './gapEvidence.ts';
+import { medianOf } from './leastSquares.ts';
 import type { Picture } from './picture.ts';
 import { cheapestPath, type StepCosts, stepCosts, type TracePath } from './tracePath.ts';
 import type { SpecimenFrame, SurfacePoint } from './unroll.ts';
@@ -18,6 +19,13 @@ export interface PairTrace {
   readonly rowCosts: Float64Array;
   /** Each row: how much darker the path is than the surface beside it, lightness units (negative: lighter). */
   readonly rowDepths: Float64Array;
+  /**
+   * How unlike the surfaces on the two sides of the gap are, median over the rows, in lightness units: two halves of one
+   * specimen are alike, the rim of a single half has its own surface on one side only.
+   */
+  readonly sidesUnlike: number;
+  /** How unlike the gap is to the surface beside it, median over the rows, lightness units. */
+  readonly gapUnlike: number;
   /** Mean cost a row; 0.03 for a clear gap, near 1 for none. */
   readonly costPerRow: number;
   /** Share of the rows in which the path crosses nothing like a gap. */
@@ -95,6 +103,7 @@ function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, pat
     const base = r * map.columns;
     depths[r] = ((l[base + left] as number) + (l[base + right] as number)) / 2 - (l[at] as number);
   }
+  const sides = sidesOf(map, path);
   const smoothed = new Float64Array(map.rows);
   const reach = Math.max(1, Math.round(0.06 / map.stepRadii));
   for (let r = 0; r < map.rows; r++) {
@@ -118,10 +127,47 @@ function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, pat
     costs,
     path,
     points,
+    ...sides,
     rowCosts: smoothed,
     rowDepths: depths,
     costPerRow: path.cost / map.rows,
     missingShare: missing / map.rows,
     missingEnd: Math.max(low, high) / map.rows,
   };
+}
+
+const SIDE_FROM = 0.12;
+const SIDE_TO = 0.45;
+
+function sidesOf(map: UnrolledMap, path: TracePath): { sidesUnlike: number; gapUnlike: number } {
+  const near = Math.max(2, Math.round(SIDE_FROM / map.stepRadii));
+  const far = Math.max(near + 2, Math.round(SIDE_TO / map.stepRadii));
+  const apart: number[] = [];
+  const deep: number[] = [];
+  for (let k = 0; k < path.rows.length; k++) {
+    const r = path.rows[k] as number;
+    // Only where the path crosses the row: along a split both sides lie in other rows.
+    if ((k > 0 && path.rows[k - 1] === r) || (k + 1 < path.rows.length && path.rows[k + 1] === r)) continue;
+    const c = path.columns[k] as number;
+    if (c - far < 0 || c + far >= map.columns) continue;
+    let difference = 0;
+    let depth = 0;
+    for (const plane of map.planes) {
+      let left = 0;
+      let right = 0;
+      const base = r * map.columns + c;
+      for (let d = near; d <= far; d++) {
+        left += plane[base - d] as number;
+        right += plane[base + d] as number;
+      }
+      left /= far - near + 1;
+      right /= far - near + 1;
+      difference += (left - right) ** 2;
+      depth += ((left + right) / 2 - (plane[base] as number)) ** 2;
+    }
+    apart.push(Math.sqrt(difference));
+    deep.push(Math.sqrt(depth));
+  }
+  if (apart.length < 5) return { sidesUnlike: 0, gapUnlike: 0 };
+  return { sidesUnlike: medianOf(apart), gapUnlike: medianOf(deep) };
 }

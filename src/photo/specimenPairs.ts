@@ -201,15 +201,28 @@ function scorePair(
       const other = meanBand(grid, line, -side * Math.max(1, 0.05 * w), -side * 0.3 * w, cells);
       const differs = other === null ? 0 : fullStep(strip, other);
       if (darker && likeGround < 0.5 && differs > 0.8)
-        shadow = Math.max(shadow, Math.min(1, differs / 2) * (1 - likeGround));
+        // The side of the bar turned from the light is dark too, but passes into the lit side softly.
+        shadow = Math.max(
+          shadow,
+          Math.min(1, differs / 2) * (1 - likeGround) * Math.max(0.3, Math.min(1, (inner.sharpness - 0.3) / 0.12)),
+        );
     }
   }
+  // A round bar is shaded across, a flat strip (a rule, a label, a shadow on the ground) is not.
+  const shades: number[] = [];
+  for (let k = -3; k <= 3; k++) {
+    const band = meanBand(grid, (c) => (top(c) + low(c)) / 2 + (k / 4) * (w / 2), -0.06 * w, 0.06 * w, cells);
+    if (band !== null) shades.push(band[0] as number);
+  }
+  const mean = shades.reduce((a, b) => a + b, 0) / Math.max(1, shades.length);
+  const shading = Math.sqrt(shades.reduce((a, b) => a + (b - mean) ** 2, 0) / Math.max(1, shades.length)) / (mean + 10);
   const terms = {
+    round: Math.min(1, shading / 0.03),
     edges: 1.2 * Math.log(0.3 + weaker) + 0.4 * Math.log(0.3 + Math.max(s1, s2)),
     length: 0.9 * Math.min(1.6, length),
     outside: -1.1 * Math.min(3, outside),
     unlike: 0.8 * unlike,
-    shadow: -(hueStep(mid, ground ?? mid) > 0.7 ? 1.2 : 0.35) * shadow,
+    shadow: -1.2 * shadow,
     nested: -1 * Math.min(1.2, Math.min(apart1, apart2)),
     glare: -0.5 * Math.min(2, glare),
     sharp: 0.8 * Math.min(1, Math.min(upper.sharpness, lower.sharpness)),
