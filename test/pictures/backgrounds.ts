@@ -190,8 +190,8 @@ const BACKGROUNDS: Readonly<Record<string, Make>> = {
     const grain = grainyNoise();
     const speckle = speckleNoise();
     return (u, v, surface) => {
-      const level = speckle.at(u * 42, v * 42) + 0.6 * grain.at(u * 30, v * 30);
-      surface.colour(colour, Math.max(0.25, 1 + 0.35 * level));
+      const level = speckle.at(u * 42, v * 42) + 0.3 * grain.at(u * 70, v * 70);
+      surface.colour(colour, Math.max(0.25, 1 + 0.28 * level));
       surface.gloss = 0.05;
       surface.tightness = 40;
     };

@@ -149,9 +149,9 @@ export class BarTracer {
 
   private march(entry: number, exit: number, hit: BarHit): boolean {
     const unit = 1 / Math.hypot(this.dx, this.dy, this.dz);
-    let step = FIRST_STEP * unit;
     let outside = entry;
-    for (let t = entry + step; t < exit; t += step) {
+    // Small steps near both walls, where the broken piece runs out to a thin edge.
+    for (let t = entry + FIRST_STEP * unit; t < exit; ) {
       if (this.solidAlong(t)) {
         let inside = t;
         for (let halving = 0; halving < 9; halving++) {
@@ -164,7 +164,8 @@ export class BarTracer {
         return true;
       }
       outside = t;
-      step = Math.min(LONGEST_STEP * unit, step * 1.35);
+      const fromWall = Math.min(t - entry, exit - t);
+      t += Math.min(LONGEST_STEP * unit, FIRST_STEP * unit + 0.35 * fromWall);
     }
     return false;
   }
@@ -260,10 +261,11 @@ export class BarTracer {
     const { bar } = this;
     const x = this.ox + t * this.dx;
     const present =
-      smoothstep(this.startX - width, this.startX + width, x) *
-      (1 - smoothstep(this.endX - width, this.endX + width, x));
+      smoothstep(bar.fromX - width, bar.fromX + width, x) * (1 - smoothstep(bar.toX - width, bar.toX + width, x));
     const fracture = bar.fracture;
-    if (present === 0 || !fracture || x < this.breakFrom || x > this.breakTo) return present;
+    if (present === 0 || !fracture) return present;
+    if (x < this.breakFrom - width) return this.hasA ? present : 0;
+    if (x > this.breakTo + width) return this.hasB ? present : 0;
     const y = this.oy + t * this.dy;
     const z = this.oz + t * this.dz;
     const first = this.hasA ? 1 - smoothstep(-width, width, fracture.sideA(x, y, z)) : 0;

@@ -164,3 +164,29 @@ export function endOn(place: Place, random: Random, radius: number): FlatThing {
     },
   };
 }
+
+/** Flat things beside the specimen: a rule along it, a coin, a label. */
+export function clutterBeside(random: Random, busy: boolean): FlatThing[] {
+  const things: FlatThing[] = [];
+  const side = random.sign();
+  if (busy || random.chance(0.2)) {
+    const turnDeg = random.normal(0, 3) + (random.chance(0.15) ? random.uniform(20, 160) : 0);
+    const away = side * random.uniform(3, 4.5) + (Math.abs(turnDeg) > 15 ? side * 6 : 0);
+    things.push(
+      rule({ x: random.uniform(-2, 2), y: away, turnDeg }, random, random.uniform(0.08, 0.25), random.uniform(9, 30)),
+    );
+  }
+  if (busy || random.chance(0.12))
+    things.push(
+      coin(
+        { x: random.uniform(-6, 6), y: -side * random.uniform(3, 5), turnDeg: random.uniform(0, 360) },
+        random,
+        random.uniform(0.8, 1.9),
+      ),
+    );
+  if (busy || random.chance(0.12)) {
+    const place = { x: random.uniform(-7, 7), y: -side * random.uniform(3.5, 6), turnDeg: random.normal(0, 12) };
+    things.push(label(place, random, random.uniform(1.4, 2.6), random.uniform(0.6, 1.1)));
+  }
+  return things;
+}

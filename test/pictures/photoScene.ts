@@ -2,7 +2,7 @@ import { BACKGROUND_NAMES, makeBackground } from './backgrounds.ts';
 import type { Bar } from './bar.ts';
 import { type BreakCourse, type BreakKind, breakOfKind } from './breaks.ts';
 import { Camera, type CameraRecipe } from './camera.ts';
-import { coin, type FlatThing, label, rule } from './clutter.ts';
+import { clutterBeside } from './clutter.ts';
 import type { CameraWork } from './develop.ts';
 import { Fracture } from './fracture.ts';
 import { MATERIAL_NAMES, type Material, makeMaterial } from './materials.ts';
@@ -133,32 +133,6 @@ export function pictureSize(random: Random, megapixels: number): { widthPx: numb
   return random.chance(0.72) ? { widthPx: wide, heightPx: high } : { widthPx: high, heightPx: wide };
 }
 
-/** Flat things beside the specimen: a rule along it, a coin, a label. */
-export function clutterBeside(random: Random, busy: boolean): FlatThing[] {
-  const things: FlatThing[] = [];
-  const side = random.sign();
-  if (busy || random.chance(0.2)) {
-    const turnDeg = random.normal(0, 3) + (random.chance(0.15) ? random.uniform(20, 160) : 0);
-    const away = side * random.uniform(3, 4.5) + (Math.abs(turnDeg) > 15 ? side * 6 : 0);
-    things.push(
-      rule({ x: random.uniform(-2, 2), y: away, turnDeg }, random, random.uniform(0.08, 0.25), random.uniform(9, 30)),
-    );
-  }
-  if (busy || random.chance(0.12))
-    things.push(
-      coin(
-        { x: random.uniform(-6, 6), y: -side * random.uniform(3, 5), turnDeg: random.uniform(0, 360) },
-        random,
-        random.uniform(0.8, 1.9),
-      ),
-    );
-  if (busy || random.chance(0.12)) {
-    const place = { x: random.uniform(-7, 7), y: -side * random.uniform(3.5, 6), turnDeg: random.normal(0, 12) };
-    things.push(label(place, random, random.uniform(1.4, 2.6), random.uniform(0.6, 1.1)));
-  }
-  return things;
-}
-
 interface Specimen {
   readonly bars: Bar[];
   readonly halves: HalfTrace[];
@@ -176,8 +150,8 @@ function specimen(
   const wideOpen = wish.view === 'pair' ? random.pick(['crack', 'small', 'small', 'small', 'wide'] as const) : 'none';
   const gapPx = {
     none: 0,
-    crack: random.uniform(1.3, 2.6),
-    small: random.uniform(2.6, 9),
+    crack: random.uniform(1.8, 3),
+    small: random.uniform(3, 9),
     wide: random.uniform(0.12, 0.5) * radiusPx,
   }[wideOpen];
   const roughnessR = material.roughnessR * random.uniform(0.6, 1.5);

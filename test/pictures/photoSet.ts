@@ -3,6 +3,7 @@ import type { BreakKind } from './breaks.ts';
 import { MATERIAL_NAMES } from './materials.ts';
 import { LIGHT_NAMES, type PhotoPlan, type PhotoWish, planBreakPhoto, type View } from './photoScene.ts';
 import { Random } from './random.ts';
+import { NEGATIVE_NAMES, planPhotoWithoutBreak } from './withoutBreak.ts';
 
 export interface SetWish {
   readonly count: number;
@@ -50,7 +51,7 @@ export function planSet({ count, negatives, seed, prefix, megapixels }: SetWish)
   const materials = shuffledRepeat(MATERIAL_NAMES, breaks, random);
   const backgrounds = shuffledRepeat([...BACKGROUND_NAMES, 'clutter'], breaks, random);
   const lights = shuffledRepeat(LIGHT_NAMES, breaks, random);
-  return Array.from({ length: breaks }, (_, i) => {
+  const broken = Array.from({ length: breaks }, (_, i): PlannedPhoto => {
     const [view, kind] = ROUND[i % ROUND.length] as (typeof ROUND)[number];
     const wish: PhotoWish = {
       view,
@@ -68,4 +69,15 @@ export function planSet({ count, negatives, seed, prefix, megapixels }: SetWish)
       },
     };
   });
+  const without = Array.from({ length: negatives }, (_, i): PlannedPhoto => {
+    const name = NEGATIVE_NAMES[i % NEGATIVE_NAMES.length] as (typeof NEGATIVE_NAMES)[number];
+    return {
+      name: `${prefix}n${String(i).padStart(2, '0')}`,
+      make: () => {
+        const own = new Random(seed * 100_003 + 50_000 + i);
+        return { plan: planPhotoWithoutBreak(name, own, megapixels), random: own };
+      },
+    };
+  });
+  return [...broken, ...without];
 }
