@@ -151,7 +151,9 @@ export class BarTracer {
     const unit = 1 / Math.hypot(this.dx, this.dy, this.dz);
     let outside = entry;
     // Small steps near both walls, where the broken piece runs out to a thin edge.
-    for (let t = entry + FIRST_STEP * unit; t < exit; ) {
+    const last = exit - 1e-6 * unit;
+    for (let t = entry + FIRST_STEP * unit; outside < last; ) {
+      t = Math.min(t, last);
       if (this.solidAlong(t)) {
         let inside = t;
         for (let halving = 0; halving < 9; halving++) {

@@ -8,7 +8,7 @@ import { Fracture } from './fracture.ts';
 import { MATERIAL_NAMES, type Material, makeMaterial } from './materials.ts';
 import type { Random } from './random.ts';
 import type { Lamp, Scene } from './render.ts';
-import { turned } from './traceProfile.ts';
+import { type TraceProfile, turned } from './traceProfile.ts';
 import {
   axisPx,
   facing,
@@ -183,11 +183,10 @@ function specimen(
     return { bars: [bar], halves, gapR: recipe.gapR, roughnessR };
   }
   // The second half was laid down a little turned, shifted or askew. It is moved apart as far as that needs room.
-  const turnRad = random.normal(0, 0.035);
+  const turnRad = stepShows(course) ? 0 : random.normal(0, 0.035);
   const yawDeg = random.normal(0, 0.5);
   const shift = random.normal(0, 0.02);
-  const reach = Math.max(Math.abs(fracture.fromX), Math.abs(fracture.toX));
-  const room = Math.abs(yawDeg * 0.0175) + 0.6 * Math.abs(turnRad) * Math.max(1, reach / 3) + Math.abs(shift) * 0.5;
+  const room = roomToTurn(course.profile, turnRad) + Math.abs(yawDeg * 0.0175) + 0.5 * Math.abs(shift);
   const bar: Bar = { ...a, halves: 'a' };
   const second: Bar = {
     ...shared,
@@ -207,6 +206,18 @@ function specimen(
     gapR: recipe.gapR + room,
     roughnessR,
   };
+}
+
+const stepShows = ({ profile }: BreakCourse): boolean =>
+  profile.steep.some(([from, to]) => Math.cos((from + to) / 2) > -0.2);
+
+/** How far the second half must move along the axis so that its turned rim clears the first, radii. */
+function roomToTurn(profile: TraceProfile, turnRad: number): number {
+  let room = 0;
+  for (let phi = -Math.PI / 2; phi <= Math.PI / 2; phi += 0.02) {
+    room = Math.max(room, profile.x(phi) - profile.x(phi - turnRad));
+  }
+  return room;
 }
 
 /** Where the specimen lies in the picture: turned any way, as large as the wish and the break allow. */
