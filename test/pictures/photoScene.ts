@@ -41,6 +41,8 @@ export interface Storing {
   readonly quality: number;
   readonly orientation: 1 | 3 | 6 | 8;
   readonly sharpened: boolean;
+  /** Whether the file tells its focal length, as telephones do. */
+  readonly tellsFocalLength: boolean;
 }
 
 export interface PhotoPlan {
@@ -123,6 +125,7 @@ export function storing(random: Random): Storing {
     quality: random.integer(62, 95),
     orientation: random.chance(0.8) ? 1 : random.pick([3, 6, 8] as const),
     sharpened: random.chance(0.35),
+    tellsFocalLength: random.chance(0.4),
   };
 }
 
@@ -220,6 +223,20 @@ function roomToTurn(profile: TraceProfile, turnRad: number): number {
   return room;
 }
 
+/** Focal length over the long side of the picture: a telephone's main lens to a camera's longest usual lens or a crop. */
+export const focalLength = (random: Random): number => random.logUniform(0.75, 3.2);
+
+/** Camera distance that shows the wanted diameter, but never nearer than seven diameters. */
+export function viewFrom(
+  focalOverLongSide: number,
+  size: { readonly widthPx: number; readonly heightPx: number },
+  diameterPx: number,
+): Pick<CameraRecipe, 'distanceR' | 'focalPx'> {
+  const focalPx = focalOverLongSide * Math.max(size.widthPx, size.heightPx);
+  const distanceR = Math.max(14, (2 * focalPx) / diameterPx);
+  return { distanceR, focalPx: (diameterPx / 2) * distanceR };
+}
+
 /** Where the specimen lies in the picture: turned any way, as large as the wish and the break allow. */
 function frameBreak(
   course: BreakCourse,
@@ -230,7 +247,7 @@ function frameBreak(
 ): CameraRecipe {
   const any = random.uniform(-180, 180);
   const rollDeg = random.chance(0.7) ? random.normal(0, 7) + (random.chance(0.5) ? 180 : 0) : any;
-  const distanceR = random.logUniform(18, 60);
+  const focalOverLongSide = focalLength(random);
   const shiftX = random.normal(0, 0.06);
   const shiftY = random.normal(0, 0.06);
   const tiltDeg = random.normal(0, 1.8);
@@ -248,8 +265,7 @@ function frameBreak(
   for (let diameterPx = wantedDiameterPx; ; diameterPx *= 0.94) {
     const camera = {
       ...size,
-      distanceR,
-      focalPx: (diameterPx / 2) * distanceR,
+      ...viewFrom(focalOverLongSide, size, diameterPx),
       tiltDeg: bounded,
       elevationDeg,
       rollDeg,

@@ -11,10 +11,16 @@ const TURN_BEFORE_STORING = { 1: 0, 3: 180, 6: 270, 8: 90 } as const;
 export async function storePhoto(plan: PhotoPlan, random: Random): Promise<Uint8Array> {
   const picture = render(plan.scene);
   const pixels = develop(picture, plan.work, random);
-  const { quality, orientation, sharpened } = plan.storing;
+  const { quality, orientation, sharpened, tellsFocalLength } = plan.storing;
   let upright = sharp(pixels, { raw: { width: picture.widthPx, height: picture.heightPx, channels: 3 } });
   if (sharpened) upright = upright.sharpen({ sigma: 1 });
   const turn = TURN_BEFORE_STORING[orientation];
   if (turn !== 0) upright = upright.rotate(turn);
-  return upright.withMetadata({ orientation }).jpeg({ quality }).toBuffer();
+  upright = upright.withMetadata({ orientation });
+  if (tellsFocalLength) {
+    const { widthPx, heightPx, focalPx } = plan.scene.camera;
+    const on35mm = Math.round((36 * focalPx) / Math.max(widthPx, heightPx));
+    upright = upright.withExifMerge({ IFD2: { FocalLengthIn35mmFilm: String(on35mm) } });
+  }
+  return upright.jpeg({ quality }).toBuffer();
 }

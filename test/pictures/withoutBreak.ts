@@ -5,7 +5,16 @@ import type { CameraRecipe } from './camera.ts';
 import { clutterBeside, endOn, type FlatThing, plate, rule } from './clutter.ts';
 import { Fracture } from './fracture.ts';
 import { MATERIAL_NAMES, type Material, makeMaterial, type Rgb } from './materials.ts';
-import { cameraWork, LIGHT_NAMES, lightOf, type PhotoPlan, pictureSize, storing } from './photoScene.ts';
+import {
+  cameraWork,
+  focalLength,
+  LIGHT_NAMES,
+  lightOf,
+  type PhotoPlan,
+  pictureSize,
+  storing,
+  viewFrom,
+} from './photoScene.ts';
 import type { Random } from './random.ts';
 import type { Scene } from './render.ts';
 
@@ -205,11 +214,9 @@ export function planPhotoWithoutBreak(name: NegativeName, random: Random, wanted
   const scale = Math.sqrt(megapixels / 2);
   const size = pictureSize(random, megapixels);
   const diameterPx = scale * random.logUniform(90, 400);
-  const distanceR = random.logUniform(22, 60);
   const camera: CameraRecipe = {
     ...size,
-    distanceR,
-    focalPx: (diameterPx / 2) * distanceR,
+    ...viewFrom(focalLength(random), size, diameterPx),
     tiltDeg: Math.max(-5, Math.min(5, random.normal(0, 1.8))),
     elevationDeg: random.normal(0, 5),
     rollDeg: random.chance(0.6) ? random.normal(0, 7) : random.uniform(-180, 180),
