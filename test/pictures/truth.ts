@@ -52,7 +52,7 @@ export function roughTrace(bar: Bar, half: 'a' | 'b', steps = 1440): TracePoint[
   const { fracture } = bar;
   if (!fracture) return [];
   const nominal = new Set<number>();
-  for (let i = 0; i < steps; i++) nominal.add(-Math.PI + (2 * Math.PI * i) / steps);
+  for (let i = 0; i < steps; i++) nominal.add(-Math.PI + (2 * Math.PI * (i + 0.5)) / steps);
   for (const [from, to] of fracture.recipe.profile.steep) {
     for (let i = 0; i <= 240; i++) nominal.add(turnedInto(from + ((to - from) * i) / 240, 0));
   }
