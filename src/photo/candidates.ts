@@ -1,5 +1,5 @@
 import { detectSpecimens, type SpecimenHypothesis, scaleFrame } from './detectSpecimen.ts';
-import { type PairTrace, SEARCHED_HALF_WIDTH, searchPairTrace } from './pairTrace.ts';
+import { compareTrace, type PairTrace, SEARCHED_HALF_WIDTH, searchPairTrace } from './pairTrace.ts';
 import { type Picture, shrink } from './picture.ts';
 import { type RefinedFrame, refineFrame } from './refineFrame.ts';
 import { insidePhoto, type RimTrace, searchRim } from './rimTrace.ts';
@@ -20,6 +20,8 @@ export interface Candidate {
   readonly toX: number;
   readonly trace: PairTrace | null;
   readonly pairValue: number;
+  /** How far its score as a specimen is behind the best one's of the photo. */
+  readonly behindBest: number;
 }
 
 export interface HalfCandidate {
@@ -44,13 +46,17 @@ function valueOfPair(hypothesis: SpecimenHypothesis, refined: RefinedFrame | nul
 /** Candidates of a photo, best pair first. */
 export function findCandidates(picture: Picture): Candidate[] {
   const levels = levelsOf(picture);
-  const candidates = detectSpecimens(picture, MOST_HYPOTHESES)
-    .map((hypothesis) => candidateOf(levels, hypothesis))
+  const hypotheses = detectSpecimens(picture, MOST_HYPOTHESES);
+  const best = hypotheses.reduce((m, h) => Math.max(m, h.score), Number.NEGATIVE_INFINITY);
+  const candidates = hypotheses
+    .map((hypothesis) => candidateOf(levels, hypothesis, best))
     .sort((a, b) => b.pairValue - a.pairValue);
-  const first = candidates[0];
-  if (first === undefined) return candidates;
-  const whole = widened(first, candidates, levels);
-  return whole === first ? candidates : [whole, ...candidates];
+  // The two best are given the chance to be only a part of the specimen.
+  for (const start of candidates.slice(0, 2)) {
+    const whole = widened(start, candidates, levels, best);
+    if (!candidates.includes(whole)) candidates.push(whole);
+  }
+  return candidates.sort((a, b) => b.pairValue - a.pairValue);
 }
 
 type Levels = (factor: number) => Picture;
@@ -66,7 +72,7 @@ function levelsOf(picture: Picture): Levels {
   };
 }
 
-function candidateOf(levels: Levels, hypothesis: SpecimenHypothesis): Candidate {
+function candidateOf(levels: Levels, hypothesis: SpecimenHypothesis, bestScore: number): Candidate {
   const factor = Math.max(1, Math.floor(hypothesis.frame.radiusPx / COMPARED_RADIUS_PX));
   const small = levels(factor);
   const start = scaleFrame(hypothesis.frame, 1 / factor);
@@ -76,13 +82,15 @@ function candidateOf(levels: Levels, hypothesis: SpecimenHypothesis): Candidate 
   const frame = refined?.frame ?? start;
   const fromX = fromPx / frame.radiusPx;
   const toX = toPx / frame.radiusPx;
-  const trace = searchPairTrace(small, frame, {
+  const found = searchPairTrace(small, frame, {
     fromX,
     toX,
     stepRadii: Math.max(1 / COMPARED_RADIUS_PX, 1 / frame.radiusPx),
     gapSizes: [3, 5, 9],
   });
+  const trace = found === null ? null : compareTrace(small, frame, found);
   return {
+    behindBest: Math.max(0, bestScore - hypothesis.score),
     hypothesis,
     frame: scaleFrame(frame, factor),
     refined,
@@ -98,10 +106,10 @@ function candidateOf(levels: Levels, hypothesis: SpecimenHypothesis): Candidate 
  * highlight or a shade: the widest candidate that is crossed wholly, and in the same way, is the specimen. (In a
  * shadow on the ground the gap is missing, or light where it is dark on the specimen.)
  */
-function widened(start: Candidate, candidates: readonly Candidate[], levels: Levels): Candidate {
+function widened(start: Candidate, candidates: readonly Candidate[], levels: Levels, bestScore: number): Candidate {
   let best = start;
   for (let round = 0; round < 3; round++) {
-    const wider = [...candidates, ...best.hypothesis.wider().map((h) => candidateOf(levels, h))]
+    const wider = [...candidates, ...best.hypothesis.wider().map((h) => candidateOf(levels, h, bestScore))]
       .filter((c) => c !== best && contains(c.frame, best.frame) && crossedAlike(c, best))
       .sort((a, b) => b.pairValue - a.pairValue)[0];
     if (wider === undefined) break;

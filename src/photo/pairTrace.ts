@@ -1,5 +1,7 @@
+import { continuationCost } from './beyondEdge.ts';
 import { type GapEvidence, gapEvidence } from './gapEvidence.ts';
 import { medianOf } from './leastSquares.ts';
+import { withoutPeriodicMarks } from './periodicMarks.ts';
 import type { Picture } from './picture.ts';
 import { cheapestPath, type StepCosts, stepCosts, type TracePath } from './tracePath.ts';
 import type { SpecimenFrame, SurfacePoint } from './unroll.ts';
@@ -26,6 +28,10 @@ export interface PairTrace {
   readonly sidesUnlike: number;
   /** How unlike the gap is to the surface beside it, median over the rows, lightness units. */
   readonly gapUnlike: number;
+  /** Mean cost a row of the next best path that keeps away from this one: periodic marks are all alike, a break is one. */
+  readonly secondCostPerRow: number;
+  /** How the trace runs on beyond the lower and the upper edge, see {@link continuationCost}. */
+  readonly beyondCosts: readonly [number, number];
   /** Mean cost a row; 0.03 for a clear gap, near 1 for none. */
   readonly costPerRow: number;
   /** Share of the rows in which the path crosses nothing like a gap. */
@@ -46,7 +52,8 @@ export interface PairSearch {
 
 /** The cheapest trace across the visible face; null when the stretch is too short to search. */
 export function searchPairTrace(picture: Picture, frame: SpecimenFrame, search: PairSearch): PairTrace | null {
-  const map = unrollFace(picture, frame, search.fromX, search.toX, search.stepRadii, SEARCHED_HALF_WIDTH);
+  const face = unrollFace(picture, frame, search.fromX, search.toX, search.stepRadii, SEARCHED_HALF_WIDTH);
+  const map = withoutPeriodicMarks(face);
   if (map.columns < 12) return null;
   const evidence = gapEvidence(map, search.gapSizes);
   const costs = stepCosts(evidence, map.rows, map.columns);
@@ -55,6 +62,27 @@ export function searchPairTrace(picture: Picture, frame: SpecimenFrame, search: 
   if (path === null) return null;
   return describe(map, evidence, costs, path);
 }
+
+/** Adds what only the comparison of candidates needs: the next best path and the continuation beyond the edges. */
+export function compareTrace(picture: Picture, frame: SpecimenFrame, trace: PairTrace): PairTrace {
+  const { map, points } = trace;
+  const blocked = bandAround(map, points, AWAY);
+  for (let i = 0; i < blocked.length; i++) blocked[i] = blocked[i] === 1 ? 0 : 1;
+  const second = cheapestPath(trace.costs, blocked);
+  const low = points[0];
+  const high = points[points.length - 1];
+  return {
+    ...trace,
+    secondCostPerRow: second === null ? 1 : second.cost / map.rows,
+    beyondCosts: [
+      low === undefined ? 1 : continuationCost(picture, frame, low.x, -1, map.stepRadii),
+      high === undefined ? 1 : continuationCost(picture, frame, high.x, 1, map.stepRadii),
+    ],
+  };
+}
+
+/** A second path keeps this far away, radii. */
+const AWAY = 0.3;
 
 /** Points further than `reach` from the trace, as a mask (1 = outside). */
 function bandAround(map: UnrolledMap, points: readonly SurfacePoint[], reach: number): Uint8Array {
@@ -128,6 +156,8 @@ function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, pat
     path,
     points,
     ...sides,
+    secondCostPerRow: 1,
+    beyondCosts: [1, 1],
     rowCosts: smoothed,
     rowDepths: depths,
     costPerRow: path.cost / map.rows,

@@ -69,7 +69,7 @@ export function searchRim(
       step[r * count + j] = own.stepBetween(r, r * map.columns + a, r * map.columns + b);
     }
   }
-  const boundary = boundaryOf(unlike, step, rows, count, 1.2);
+  const boundary = boundaryOf(unlike, step, rows, count, JUMP_COST);
   if (boundary === null) return null;
   const points: SurfacePoint[] = [];
   let sum = 0;
@@ -91,6 +91,7 @@ const UNLIKE_MOST = 22;
 const UNLIKE_LIMIT = 8;
 const STEP_WEIGHT = 5;
 const STEP_MOST = 6;
+const JUMP_COST = 6;
 
 /** Mean over 3 × 3 map points. */
 function boxed(map: UnrolledMap): UnrolledMap {
@@ -144,6 +145,23 @@ function ownLook(map: UnrolledMap, fromColumn: number, toColumn: number) {
       const spread = ((values[Math.floor(0.9 * n)] ?? 0) - (values[Math.floor(0.1 * n)] ?? 0)) / 2.56;
       level[k as 0 | 1 | 2][r] = median;
       scatter[k as 0 | 1 | 2][r] = Math.max(SCATTER_FLOOR[k as 0 | 1 | 2] as number, spread);
+    }
+  }
+  // Grain and marks differ from row to row: a row's scatter takes in how its neighbours differ from it.
+  const reach = Math.max(1, Math.round(0.08 / map.stepRadii));
+  for (const k of [0, 1, 2] as const) {
+    const own = Float32Array.from(scatter[k]);
+    for (let r = 0; r < rows; r++) {
+      let sum = 0;
+      let n = 0;
+      for (let q = Math.max(0, r - reach); q <= Math.min(rows - 1, r + reach); q++) {
+        // The shading across the bar is no scatter: only what a straight line through the neighbours leaves.
+        const mirror = Math.max(0, Math.min(rows - 1, 2 * r - q));
+        const bend = ((level[k][q] as number) + (level[k][mirror] as number)) / 2 - (level[k][r] as number);
+        sum += (own[q] as number) ** 2 + bend * bend;
+        n += 1;
+      }
+      scatter[k][r] = Math.sqrt(sum / n);
     }
   }
   return {

@@ -333,7 +333,7 @@ function describePieces(
   if (share('steep') >= 0.3 && share('inclined') < 0.15) {
     shape = 'longitudinal';
     closing = 'flat';
-  } else if (share('steep') > 0 && inclined.length > 0 && share('inclined') > share('steep')) {
+  } else if (share('steep') > 0 && share('steep') < 0.7 && share('inclined') >= 0.2) {
     closing = 'steep';
     shape = share('flat') < 0.12 ? 'helix' : 'mixed';
   } else if (fits.every((f) => f.kind === (fits[0] as (typeof fits)[number]).kind)) {
