@@ -16,6 +16,7 @@ const STAMP = '.sources';
 const ENTRIES = {
   main: 'server/main.ts',
   measureWorker: 'src/photo/node/measureWorker.ts',
+  uprightWorker: 'server/photos/uprightWorker.ts',
 };
 
 async function filesIn(folder) {

@@ -24,7 +24,8 @@ function portsOf(programDir: string): CliPorts {
       return openStore(dataDir);
     },
     async serve(options) {
-      throw new Error('the service is not part of this version');
+      const { serve } = await import('./serve.ts');
+      return serve({ ...options, programDir, version });
     },
   };
 }

@@ -1,11 +1,10 @@
 import { createHash } from 'node:crypto';
-import { existsSync } from 'node:fs';
 import { readFile } from 'node:fs/promises';
 import { availableParallelism, totalmem } from 'node:os';
-import { fileURLToPath } from 'node:url';
 import { Piscina } from 'piscina';
 import type { MeasureJob, MeasurePool } from '../../src/photo/measurement.ts';
 import type { PhotoMeasurement, PhotoNotMeasured } from '../../src/records/reading.ts';
+import { type ProgramPart, programPart } from '../programPart.ts';
 
 /** Memory one measurement may take at its largest: the decoded photo, its working copies and the worker itself, MB. */
 const MEMORY_A_WORKER_MB = 900;
@@ -22,7 +21,7 @@ export interface MeasurePoolOptions {
   /** Number of workers; by default as many as cores and memory allow. */
   readonly size?: number;
   /** The worker's entry; by default the one that measures photos. For tests of the pool itself. */
-  readonly workerUrl?: URL;
+  readonly worker?: ProgramPart;
   readonly longestMeasurementMs?: number;
 }
 
@@ -30,13 +29,6 @@ export interface MeasurePoolOptions {
 export function poolSize(cores: number, memoryBytes: number): number {
   const fitting = Math.floor((memoryBytes * MEMORY_SHARE) / (MEMORY_A_WORKER_MB * 1024 * 1024));
   return Math.max(1, Math.min(cores, fitting));
-}
-
-/** The built worker lies beside this module; from source it is the TypeScript file itself, run through tsx. */
-function workerEntry(): URL {
-  const built = new URL('./measureWorker.js', import.meta.url);
-  if (existsSync(fileURLToPath(built))) return built;
-  return new URL('../../src/photo/node/measureWorker.ts', import.meta.url);
 }
 
 async function sha256Of(path: string): Promise<string> {
@@ -64,15 +56,16 @@ async function fault(path: string, message: string, startedMs: number): Promise<
  * costs only its own photo, which then is `not-measured` with code `fault`.
  */
 export function createMeasurePool(options: MeasurePoolOptions = {}): MeasurePool {
-  const entry = options.workerUrl ?? workerEntry();
+  const worker = options.worker ?? programPart('measureWorker.js', '../src/photo/node/measureWorker.ts');
+  if (!worker) throw new Error('the measuring worker is missing; build the program again');
   const longestMs = options.longestMeasurementMs ?? LONGEST_MEASUREMENT_MS;
   const piscina = new Piscina<MeasureJob, PhotoMeasurement>({
-    filename: entry.href,
+    filename: worker.url.href,
     minThreads: 0,
     maxThreads: options.size ?? poolSize(availableParallelism(), totalmem()),
     idleTimeout: IDLE_MS,
     resourceLimits: { maxOldGenerationSizeMb: HEAP_A_WORKER_MB },
-    ...(entry.pathname.endsWith('.ts') && { execArgv: ['--import', 'tsx'] }),
+    execArgv: [...worker.execArgv],
   });
   // A worker that dies is replaced; its photo gets its answer below.
   piscina.on('error', () => {});

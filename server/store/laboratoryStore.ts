@@ -353,20 +353,31 @@ export class LaboratoryStore implements LaboratoryRecords {
     });
   }
 
-  takeMeasurement(): Promise<DueMeasurement | null> {
-    return this.#change((db) => takeNext(db, this.#clock()));
+  /** Takes the next due measurement; with `now` only one that a person waits for. */
+  takeMeasurement(urgency: Urgency = 'later'): Promise<DueMeasurement | null> {
+    return this.#change((db) => takeNext(db, this.#clock(), PRIORITY[urgency]));
   }
 
-  /** Keeps the reading of a due measurement, unless it was ended meanwhile: a measurement is kept once. */
-  keepMeasurement(due: DueMeasurement, reading: NewReading): Promise<Reading | null> {
+  /**
+   * Keeps the reading of a due measurement, unless it was ended meanwhile: a measurement is kept once.
+   * @param setAsideWhy the photo is set aside as poisonous, for this reason
+   */
+  keepMeasurement(
+    due: DueMeasurement,
+    reading: NewReading,
+    setAsideWhy: string | null = null,
+  ): Promise<Reading | null> {
     return this.#change(async (db) => {
       const row = await db.selectFrom('measuring').select('state').where('id', '=', due.id).executeTakeFirst();
-      return row?.state === 'running' ? this.#keepReading(db, reading) : null;
+      if (row?.state !== 'running') return null;
+      if (setAsideWhy !== null) await endTry(db, due.id, 'set-aside', setAsideWhy, this.#clock());
+      return this.#keepReading(db, reading);
     });
   }
 
-  giveUpMeasurement(due: DueMeasurement, state: 'waiting' | 'set-aside', reason: string): Promise<void> {
-    return this.#change((db) => endTry(db, due.id, state, reason, this.#clock()));
+  /** Gives a measurement back to the queue, to be tried again. */
+  returnMeasurement(due: DueMeasurement, reason: string): Promise<void> {
+    return this.#change((db) => endTry(db, due.id, 'waiting', reason, this.#clock()));
   }
 
   /** Takes everything that waits out of the queue; the photos stay. @returns how many */

@@ -24,12 +24,16 @@ const dueOf = (row: MeasuringTable): DueMeasurement => ({
   tries: row.tries,
 });
 
-/** Takes the next due measurement; null when there is none. Must run inside a transaction. */
-export async function takeNext(db: Db, nowMs: number): Promise<DueMeasurement | null> {
+/**
+ * Takes the next due measurement; null when there is none. Must run inside a transaction.
+ * @param mostPatient highest priority number that is taken: 0 takes only what a person waits for
+ */
+export async function takeNext(db: Db, nowMs: number, mostPatient: number): Promise<DueMeasurement | null> {
   const row = await db
     .selectFrom('measuring')
     .selectAll()
     .where('state', '=', 'waiting')
+    .where('priority', '<=', mostPatient)
     .orderBy('priority')
     .orderBy('id')
     .limit(1)

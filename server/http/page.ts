@@ -1,0 +1,28 @@
+import { existsSync } from 'node:fs';
+import { join } from 'node:path';
+import fastifyStatic from '@fastify/static';
+import type { FastifyInstance } from 'fastify';
+
+/** Names with a hash of their content never change. */
+const isHashed = (path: string): boolean => /[/\\]assets[/\\].+-[\w-]{8}\.\w+$/.test(path);
+
+/**
+ * Serves the built page.
+ * @returns whether a path that no file has is a place of the page, shown by index.html
+ */
+export async function servePage(app: FastifyInstance, programDir: string): Promise<(path: string) => boolean> {
+  const root = join(programDir, 'dist', 'web');
+  const built = existsSync(join(root, 'index.html'));
+  if (built) {
+    await app.register(fastifyStatic, {
+      root,
+      index: 'index.html',
+      dotfiles: 'deny',
+      cacheControl: false,
+      setHeaders: (response, path) => {
+        response.header('cache-control', isHashed(path) ? 'public, max-age=31536000, immutable' : 'no-cache');
+      },
+    });
+  }
+  return (path) => built && path !== '/api' && !path.startsWith('/api/') && !/\.\w+$/.test(path);
+}
