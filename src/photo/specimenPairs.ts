@@ -25,15 +25,30 @@ const MINIMUM_WIDTH_PX = 9;
  * together), outsides of different hue (half a specimen up to its highlight).
  */
 export function findPairs(grid: AlignedCells, edges: readonly AlignedEdge[], most: number): SpecimenPair[] {
-  const pairs: SpecimenPair[] = [];
+  const couples: { upper: AlignedEdge; lower: AlignedEdge; span: Span; bound: number }[] = [];
   for (const upper of edges) {
     for (const lower of edges) {
       if (upper === lower) continue;
-      const pair = pairOf(grid, edges, upper, lower);
-      if (pair !== null) pairs.push(pair);
+      const span = spanOf(grid, upper, lower);
+      if (span === null) continue;
+      const sure = Object.values(edgeTerms(grid, upper, lower, span)).reduce((a, b) => a + b, 0);
+      couples.push({ upper, lower, span, bound: sure + MOST_COLOUR_TERMS });
     }
   }
-  return pairs.sort((a, b) => b.score - a.score).slice(0, most);
+  // Best bound first: once the bound falls under the last place, no further couple can enter.
+  couples.sort((a, b) => b.bound - a.bound);
+  const pairs: SpecimenPair[] = [];
+  for (const { upper, lower, span, bound } of couples) {
+    const last = pairs[most - 1];
+    if (last !== undefined && bound <= last.score) break;
+    const pair = scorePair(grid, edges, upper, lower, span);
+    if (pair === null || (last !== undefined && pair.score <= last.score)) continue;
+    let at = pairs.length;
+    while (at > 0 && (pairs[at - 1] as SpecimenPair).score < pair.score) at -= 1;
+    pairs.splice(at, 0, pair);
+    if (pairs.length > most) pairs.pop();
+  }
+  return pairs;
 }
 
 /** Pairs that contain a pair, with an edge further out on one side or on both: the `reach` nearest ones on each side. */
@@ -70,6 +85,18 @@ function pairOf(
   upper: AlignedEdge,
   lower: AlignedEdge,
 ): SpecimenPair | null {
+  const span = spanOf(grid, upper, lower);
+  return span === null ? null : scorePair(grid, edges, upper, lower, span);
+}
+
+/** Where both edges run side by side, and how far apart. */
+interface Span {
+  readonly fromCell: number;
+  readonly toCell: number;
+  readonly widthPx: number;
+}
+
+function spanOf(grid: AlignedCells, upper: AlignedEdge, lower: AlignedEdge): Span | null {
   const fromCell = Math.max(upper.fromCell, lower.fromCell);
   const toCell = Math.min(upper.toCell, lower.toCell);
   if (toCell - fromCell < 2) return null;
@@ -81,9 +108,29 @@ function pairOf(
   if (!(widthPx >= MINIMUM_WIDTH_PX) || widthPx > 0.75 * grid.rows * grid.stepPx) return null;
   const lengthPx = (toCell - fromCell + 1) * grid.cellPx;
   if (Math.abs(w1 - w0) > 0.05 * lengthPx || Math.min(w0, w1) < 0.6 * widthPx) return null;
-  if (lengthPx < 0.9 * widthPx) return null;
-  return scorePair(grid, edges, upper, lower, fromCell, toCell, widthPx);
+  return lengthPx < 0.9 * widthPx ? null : { fromCell, toCell, widthPx };
 }
+
+/** Strength of an edge a cell, noise units. */
+const perCell = (e: AlignedEdge) => Math.min(8, e.strength / Math.sqrt(e.toCell - e.fromCell + 1));
+
+/** The terms of the score that need no colours. */
+function edgeTerms(grid: AlignedCells, upper: AlignedEdge, lower: AlignedEdge, span: Span) {
+  const s1 = perCell(upper);
+  const s2 = perCell(lower);
+  const cells = span.toCell - span.fromCell + 1;
+  return {
+    edges: 1.2 * Math.log(0.3 + Math.min(s1, s2)) + 0.4 * Math.log(0.3 + Math.max(s1, s2)),
+    length: 0.9 * Math.min(1.6, Math.log(((cells * grid.cellPx) / span.widthPx + 1) / 2)),
+    sharp: 0.8 * Math.min(1, Math.min(upper.sharpness, lower.sharpness)),
+    width: 0.25 * Math.log(span.widthPx / 20),
+  };
+}
+
+const MOST_UNLIKE = 1.5;
+const UNLIKE_WEIGHT = 0.8;
+/** What the colours can add at the most: unlike its surroundings, and shaded as a round bar is. */
+const MOST_COLOUR_TERMS = UNLIKE_WEIGHT * MOST_UNLIKE + 1;
 
 type Colour = Float64Array;
 
@@ -129,10 +176,9 @@ function scorePair(
   edges: readonly AlignedEdge[],
   upper: AlignedEdge,
   lower: AlignedEdge,
-  fromCell: number,
-  toCell: number,
-  widthPx: number,
+  span: Span,
 ): SpecimenPair | null {
+  const { fromCell, toCell, widthPx } = span;
   const n = toCell - fromCell + 1;
   const cells = Array.from({ length: Math.min(n, 14) }, (_, i) =>
     Math.round(fromCell + ((i + 0.5) * n) / Math.min(n, 14) - 0.5),
@@ -159,15 +205,11 @@ function scorePair(
     for (const b of [out2, far2]) if (a !== null && b !== null) combos.push(backgroundStep(a, b));
   const outside = combos.length > 0 ? Math.min(...combos) : 3;
 
-  const perCell = (e: AlignedEdge) => Math.min(8, e.strength / Math.sqrt(e.toCell - e.fromCell + 1));
-  const s1 = perCell(upper);
-  const s2 = perCell(lower);
-  const weaker = Math.min(s1, s2);
-  const length = Math.log(((n * grid.cellPx) / w + 1) / 2);
+  const weaker = Math.min(perCell(upper), perCell(lower));
 
   const side1 = out1 === null ? 0 : fullStep(in1, out1);
   const side2 = out2 === null ? 0 : fullStep(in2, out2);
-  const unlike = Math.min(1.5, Math.min(side1, side2));
+  const unlike = Math.min(MOST_UNLIKE, side1, side2);
 
   // The ground further off: beside the specimen lies background, darkened on one side at the most.
   const ground1 = meanBand(grid, top, 1.1 * w, 3 * w, cells) ?? far1;
@@ -217,16 +259,13 @@ function scorePair(
   const mean = shades.reduce((a, b) => a + b, 0) / Math.max(1, shades.length);
   const shading = Math.sqrt(shades.reduce((a, b) => a + (b - mean) ** 2, 0) / Math.max(1, shades.length)) / (mean + 10);
   const terms = {
+    ...edgeTerms(grid, upper, lower, span),
     round: Math.min(1, shading / 0.03),
-    edges: 1.2 * Math.log(0.3 + weaker) + 0.4 * Math.log(0.3 + Math.max(s1, s2)),
-    length: 0.9 * Math.min(1.6, length),
     outside: -1.1 * Math.min(3, outside),
-    unlike: 0.8 * unlike,
+    unlike: UNLIKE_WEIGHT * unlike,
     shadow: -1.2 * shadow,
     nested: -1 * Math.min(1.2, Math.min(apart1, apart2)),
     glare: -0.5 * Math.min(2, glare),
-    sharp: 0.8 * Math.min(1, Math.min(upper.sharpness, lower.sharpness)),
-    width: 0.25 * Math.log(w / 20),
   };
   const score = Object.values(terms).reduce((a, b) => a + b, 0);
   return { upper, lower, fromCell, toCell, widthPx, score, terms };

@@ -1,3 +1,4 @@
+import ExifReader from 'exifreader';
 import { fileTypeFromBuffer } from 'file-type';
 import sharp, { type Sharp } from 'sharp';
 import { type Picture, pictureFromRgb } from '../picture.ts';
@@ -21,6 +22,8 @@ export interface OpenPhoto {
   /** Size of the upright photo, px. */
   readonly widthPx: number;
   readonly heightPx: number;
+  /** Focal length over the long side of the photo as the photo's EXIF data state it (35-mm equivalent over 36 mm); else null. */
+  readonly focalOverLongSide: number | null;
   /** The whole photo with its long side at most `longSidePx`. */
   whole(longSidePx: number): Promise<Picture>;
   /** A window of the upright photo, `scale` picture px per photo px (≤ 1). */
@@ -95,6 +98,7 @@ export async function openPhoto(bytes: Uint8Array): Promise<OpenOutcome> {
     photo: {
       widthPx,
       heightPx,
+      focalOverLongSide: focalOf(bytes),
       async whole(longSidePx) {
         const longSide = Math.max(widthPx, heightPx);
         if (longSide <= longSidePx) return toPicture(upright(), 1);
@@ -138,6 +142,22 @@ async function decodeHeic(
       width: image.width,
       height: image.height,
     };
+  } catch {
+    return null;
+  }
+}
+
+/** A focal length outside what lenses have is a wrong entry. */
+const SHORTEST_FOCAL_MM = 12;
+const LONGEST_FOCAL_MM = 600;
+
+function focalOf(bytes: Uint8Array): number | null {
+  try {
+    const tag = ExifReader.load(
+      bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength),
+    ).FocalLengthIn35mmFilm;
+    const mm = typeof tag?.value === 'number' ? tag.value : Number.NaN;
+    return mm >= SHORTEST_FOCAL_MM && mm <= LONGEST_FOCAL_MM ? mm / 36 : null;
   } catch {
     return null;
   }

@@ -39,6 +39,7 @@ export async function measurePhoto(bytes: Uint8Array, options: MeasureOptions = 
       widthPx: photo.widthPx,
       heightPx: photo.heightPx,
       cameraTiltStandardUncertaintyDeg: tilt,
+      focalOverLongSide: photo.focalOverLongSide,
     });
     return {
       outcome: 'measured',
@@ -66,6 +67,9 @@ export async function measurePhoto(bytes: Uint8Array, options: MeasureOptions = 
       warnings: [],
     };
   }
-  const result = measurePicture(picture, { cameraTiltStandardUncertaintyDeg: tilt });
+  const result = measurePicture(picture, {
+    cameraTiltStandardUncertaintyDeg: tilt,
+    focalOverLongSide: photo.focalOverLongSide,
+  });
   return { ...result, ...size, elapsedMs: elapsed() };
 }
