@@ -2,6 +2,7 @@
  * Renders a set of photos of broken specimens with known truth, for judging the measurement.
  *
  *   npx tsx test/pictures/main.ts OUTDIR [--count 100] [--seed 1] [--negatives 20] [--prefix p] [--megapixels 2]
+ *     [--only TEXT] [--truth-only]
  *
  * Photos and specimens are invented. The same seed gives the same set.
  */
@@ -20,6 +21,7 @@ const { values, positionals } = parseArgs({
     prefix: { type: 'string', default: 'p' },
     megapixels: { type: 'string' },
     only: { type: 'string' },
+    'truth-only': { type: 'boolean', default: false },
   },
 });
 
@@ -45,8 +47,7 @@ async function main(): Promise<number> {
     if (values.only !== undefined && !name.includes(values.only)) continue;
     const started = performance.now();
     const { plan, random } = make();
-    const bytes = await storePhoto(plan, random);
-    await writeFile(join(folder, `${name}.jpg`), bytes);
+    if (!values['truth-only']) await writeFile(join(folder, `${name}.jpg`), await storePhoto(plan, random));
     await writeFile(join(folder, `${name}.json`), `${JSON.stringify({ file: `${name}.jpg`, ...plan.truth })}\n`);
     const { widthPx, heightPx } = plan.scene.camera;
     const seconds = ((performance.now() - started) / 1000).toFixed(1);

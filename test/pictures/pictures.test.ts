@@ -124,6 +124,10 @@ describe('truth', () => {
     }
   });
 
+  it.each([-0.7, 0, 0.9])('a closing step in view at %s rad does not change the slope of the helix', (stepPhi) => {
+    expect(slopeDeg(helix(-52, stepPhi, 0.15))).toBeCloseTo(-52, 2);
+  });
+
   it('a flat cut has the mean slope of its sine over ±60°', () => {
     // Least squares of a·sin φ on φ over (−c, c): a · 3 (sin c − c cos c) / c³.
     const c = Math.PI / 3;

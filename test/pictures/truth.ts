@@ -83,9 +83,22 @@ const pieceOf = (pieces: readonly TracePiece[], nominalPhi: number): TracePiece 
     return phi >= piece.fromPhi && phi <= piece.toPhi;
   });
 
+/** Runs of points on the main piece; a closing step in view parts it into two. */
+function mainStretches(points: readonly TracePoint[], pieces: readonly TracePiece[], turnRad: number): TracePoint[][] {
+  const stretches: TracePoint[][] = [];
+  let running = false;
+  for (const point of points) {
+    const main = pieceOf(pieces, point.nominalPhi - turnRad)?.main === true;
+    if (main && running) stretches.at(-1)?.push(point);
+    else if (main) stretches.push([point]);
+    running = main;
+  }
+  return stretches;
+}
+
 /**
- * Least-squares slope of the rough trace over ±60° of the visible face, as plane angle in degrees; each half has its
- * own intercept and the slope is common. Only stretches of the main piece count. Null where too little of it shows.
+ * Least-squares slope of the rough trace over ±60° of the visible face, as plane angle in degrees; each stretch of
+ * each half has its own intercept and the slope is common. Only stretches of the main piece count. Null where too little of it shows.
  */
 export function visibleFrontThetaDeg(
   halves: readonly HalfTrace[],
@@ -101,17 +114,21 @@ export function visibleFrontThetaDeg(
   for (const { bar, half, turnRad } of halves) {
     const centre = facing(bar, camera).phi;
     const points = visiblePart(roughTrace(bar, half), bar, camera).filter(
-      (point) =>
-        Math.abs(point.phi - centre) <= (FRONT_DEG * Math.PI) / 180 &&
-        pieceOf(pieces, point.nominalPhi - turnRad)?.main === true,
+      (point) => Math.abs(point.phi - centre) <= (FRONT_DEG * Math.PI) / 180,
     );
-    least = Math.min(least, points.length);
-    const meanPhi = points.reduce((sum, point) => sum + point.phi, 0) / points.length;
-    const meanX = points.reduce((sum, point) => sum + point.x, 0) / points.length;
-    for (const point of points) {
-      sumPP += (point.phi - meanPhi) ** 2;
-      sumPX += (point.phi - meanPhi) * (point.x - meanX);
-      sumXX += (point.x - meanX) ** 2;
+    const stretches = mainStretches(points, pieces, turnRad);
+    least = Math.min(
+      least,
+      stretches.reduce((sum, stretch) => sum + stretch.length, 0),
+    );
+    for (const stretch of stretches) {
+      const meanPhi = stretch.reduce((sum, point) => sum + point.phi, 0) / stretch.length;
+      const meanX = stretch.reduce((sum, point) => sum + point.x, 0) / stretch.length;
+      for (const point of stretch) {
+        sumPP += (point.phi - meanPhi) ** 2;
+        sumPX += (point.phi - meanPhi) * (point.x - meanX);
+        sumXX += (point.x - meanX) ** 2;
+      }
     }
   }
   if (least < 20) return null;
