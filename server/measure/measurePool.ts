@@ -23,6 +23,8 @@ export interface MeasurePoolOptions {
   /** The worker's entry; by default the one that measures photos. For tests of the pool itself. */
   readonly worker?: ProgramPart;
   readonly longestMeasurementMs?: number;
+  /** Largest heap of a worker, MB. */
+  readonly heapMb?: number;
 }
 
 /** As many workers as there are cores, but never more than fit into half the memory of the machine; at least 1. */
@@ -59,34 +61,49 @@ export function createMeasurePool(options: MeasurePoolOptions = {}): MeasurePool
   const worker = options.worker ?? programPart('measureWorker.js', '../src/photo/node/measureWorker.ts');
   if (!worker) throw new Error('the measuring worker is missing; build the program again');
   const longestMs = options.longestMeasurementMs ?? LONGEST_MEASUREMENT_MS;
+  const size = options.size ?? poolSize(availableParallelism(), totalmem());
   const piscina = new Piscina<MeasureJob, PhotoMeasurement>({
     filename: worker.url.href,
     minThreads: 0,
-    maxThreads: options.size ?? poolSize(availableParallelism(), totalmem()),
+    maxThreads: size,
     idleTimeout: IDLE_MS,
-    resourceLimits: { maxOldGenerationSizeMb: HEAP_A_WORKER_MB },
+    resourceLimits: { maxOldGenerationSizeMb: options.heapMb ?? HEAP_A_WORKER_MB },
     execArgv: [...worker.execArgv],
   });
   // A worker that dies is replaced; its photo gets its answer below.
   piscina.on('error', () => {});
+
+  // Photos wait here, not in the pool, so that the time of a photo runs only while it is measured.
+  const waiting: (() => void)[] = [];
+  let busy = 0;
+  const takeWorker = async (): Promise<void> => {
+    if (busy < size) {
+      busy++;
+      return;
+    }
+    await new Promise<void>((resolve) => waiting.push(resolve));
+  };
+  const giveWorkerBack = (): void => {
+    const next = waiting.shift();
+    if (next) next();
+    else busy--;
+  };
+
   return {
     async measure(job) {
+      await takeWorker();
       const startedMs = performance.now();
       const giveUp = new AbortController();
-      let timer: NodeJS.Timeout | undefined;
-      const run = piscina.run(job, { signal: giveUp.signal });
-      timer = setTimeout(() => giveUp.abort(), longestMs);
+      const timer = setTimeout(() => giveUp.abort(), longestMs);
       try {
-        return await run;
+        return await piscina.run(job, { signal: giveUp.signal });
       } catch (error) {
-        const why = giveUp.signal.aborted
-          ? `it took longer than ${longestMs / 1000} s`
-          : error instanceof Error
-            ? error.message
-            : String(error);
-        return fault(job.path, `measuring this photo failed: ${why}; measure it by hand`, startedMs);
+        const reason = error instanceof Error ? error.message : String(error);
+        const why = giveUp.signal.aborted ? `it took longer than ${longestMs / 1000} s` : reason;
+        return await fault(job.path, `measuring this photo failed: ${why}; measure it by hand`, startedMs);
       } finally {
         clearTimeout(timer);
+        giveWorkerBack();
       }
     },
     async close() {

@@ -1,3 +1,4 @@
+/// <reference path="../../src/photo/node/heic-decode.d.ts" />
 import { readFile } from 'node:fs/promises';
 import { fileTypeFromBuffer } from 'file-type';
 import heic from 'heic-decode';
