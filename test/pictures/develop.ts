@@ -58,7 +58,7 @@ function exposure({ rgb }: LinearPicture): number {
   greens.sort((a, b) => a - b);
   const at = (share: number) => greens[Math.floor(share * (greens.length - 1))] as number;
   const middle = Math.max(0.01, (greens.reduce((sum, green) => sum + Math.sqrt(green), 0) / greens.length) ** 2);
-  return Math.min(0.2 / middle, 0.75 / Math.max(0.01, at(0.97)));
+  return Math.min(0.26 / middle, 0.85 / Math.max(0.01, at(0.97)));
 }
 
 /** sRGB with a slight S and a soft shoulder; 4096 steps up to 1.365 of full scale. */

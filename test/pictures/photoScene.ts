@@ -246,7 +246,9 @@ function frameBreak(
   wantedDiameterPx: number,
 ): CameraRecipe {
   const any = random.uniform(-180, 180);
-  const rollDeg = random.chance(0.7) ? random.normal(0, 7) + (random.chance(0.5) ? 180 : 0) : any;
+  // Most photographers lay the specimen along the picture.
+  const along = size.widthPx > size.heightPx ? 0 : 90;
+  const rollDeg = random.chance(0.7) ? along + random.normal(0, 7) + (random.chance(0.5) ? 180 : 0) : any;
   const focalOverLongSide = focalLength(random);
   const shiftX = random.normal(0, 0.06);
   const shiftY = random.normal(0, 0.06);

@@ -7,10 +7,10 @@ import type { Benchmark } from './benchmark.ts';
 
 /** A rendered pair with a helical break, wide enough to measure, as a JPEG of the wanted size. */
 async function helicalPair(megapixels: number): Promise<Uint8Array> {
-  const wish = { view: 'pair', kind: 'helix', background: 'white paper', light: 'diffuse', megapixels } as const;
+  const wish = { view: 'pair', kind: 'helix', background: 'black paper', light: 'diffuse', megapixels } as const;
   for (let seed = 1; ; seed++) {
     const random = new Random(seed);
-    const plan = planBreakPhoto({ ...wish, material: 'brass', diameterPx: 260 }, random);
+    const plan = planBreakPhoto({ ...wish, material: 'chalk', diameterPx: 260 }, random);
     const { lipGapPx, diameterPx } = plan.truth as { lipGapPx: { median: number }; diameterPx: number };
     if (lipGapPx.median > 4 && diameterPx > 200) return storePhoto(plan, random);
   }
