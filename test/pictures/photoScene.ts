@@ -6,6 +6,7 @@ import { clutterBeside } from './clutter.ts';
 import type { CameraWork } from './develop.ts';
 import { Fracture } from './fracture.ts';
 import { MATERIAL_NAMES, type Material, makeMaterial } from './materials.ts';
+import { pencilBeside } from './pencil.ts';
 import type { Random } from './random.ts';
 import type { Lamp, Scene } from './render.ts';
 import { type TraceProfile, turned } from './traceProfile.ts';
@@ -300,10 +301,11 @@ export function planBreakPhoto(wish: PhotoWish, random: Random): PhotoPlan {
     wish.background === undefined || wish.background === 'clutter' ? random.pick(BACKGROUND_NAMES) : wish.background;
   const light = wish.light ?? random.pick(LIGHT_NAMES);
   const { bars, halves, gapR, roughnessR } = specimen(wish, course, material, random, radiusPx);
+  const benchZ = random.chance(0.65) ? -1.005 : -random.uniform(1.2, 2.5);
   const scene: Scene = {
     camera: recipe,
-    bars,
-    benchZ: random.chance(0.65) ? -1.005 : -random.uniform(1.2, 2.5),
+    bars: busy && random.chance(0.5) ? [...bars, pencilBeside(random, benchZ)] : bars,
+    benchZ,
     background: makeBackground(backgroundName, random, radiusPx),
     things: clutterBeside(random, busy),
     ...lightOf(light, random),

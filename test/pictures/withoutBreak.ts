@@ -5,6 +5,7 @@ import type { CameraRecipe } from './camera.ts';
 import { clutterBeside, endOn, type FlatThing, plate, rule } from './clutter.ts';
 import { Fracture } from './fracture.ts';
 import { MATERIAL_NAMES, type Material, makeMaterial, type Rgb } from './materials.ts';
+import { pencilMaterial } from './pencil.ts';
 import {
   cameraWork,
   focalLength,
@@ -115,28 +116,6 @@ function threaded(base: Material, pitchR: number): Material {
   };
 }
 
-function pencil(base: Material, random: Random): Material {
-  const paint = random.pick<Rgb>([
-    [0.7, 0.42, 0.02],
-    [0.45, 0.03, 0.03],
-    [0.03, 0.2, 0.1],
-  ]);
-  return {
-    ...base,
-    outer(_x, phi, surface) {
-      const side = Math.round(phi / (Math.PI / 3)) * (Math.PI / 3);
-      surface.colour(paint, 1);
-      surface.gloss = 0.12;
-      surface.tightness = 25;
-      surface.metal = 0;
-      surface.clear = 0;
-      surface.tipX = 0;
-      // The six flats: the normal of a flat is that of its middle.
-      surface.tipPhi = Math.tan(side - phi);
-    },
-  };
-}
-
 function contents(name: NegativeName, random: Random, pixelsPerRadius: number): Contents {
   const material = () => makeMaterial(random.pick(MATERIAL_NAMES), random, pixelsPerRadius);
   const middle = { x: random.normal(0, 0.5), y: random.normal(0, 0.5), turnDeg: random.normal(0, 8) };
@@ -164,7 +143,7 @@ function contents(name: NegativeName, random: Random, pixelsPerRadius: number): 
       return { things: [rule(middle, random, random.uniform(0.08, 0.2), random.uniform(12, 60))] };
     case 'pencil alone':
       return {
-        bars: [intact(pencil(material(), random), { radiusR: 0.5, position: { x: 0, y: 0, z: -0.5 } })],
+        bars: [intact(pencilMaterial(material(), random), { radiusR: 0.5, position: { x: 0, y: 0, z: -0.5 } })],
         clutter: true,
       };
     case 'taped bar':
