@@ -8,7 +8,9 @@ import type { SpecimenFrame } from './unroll.ts';
 /** Radius, picture px, at which candidates are compared: enough to see a gap, small enough to be quick. */
 const COMPARED_RADIUS_PX = 40;
 const MOST_HYPOTHESES = 10;
-const MOST_HALVES = 4;
+const MOST_HALVES = 6;
+/** Widths of gap looked for, in steps of the compared map: from a crack to a third of the diameter. */
+const GAP_SIZES = [3, 5, 9, 17];
 
 /** A place where a specimen may lie, its edges fitted, with the best gap across it. Frame in px of the picture given. */
 export interface Candidate {
@@ -86,7 +88,7 @@ function candidateOf(levels: Levels, hypothesis: SpecimenHypothesis, bestScore: 
     fromX,
     toX,
     stepRadii: Math.max(1 / COMPARED_RADIUS_PX, 1 / frame.radiusPx),
-    gapSizes: [3, 5, 9],
+    gapSizes: GAP_SIZES,
   });
   const trace = found === null ? null : compareTrace(small, frame, found);
   return {
