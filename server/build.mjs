@@ -1,7 +1,7 @@
 /**
  * Builds what a checkout needs to run: the program (service, command line, measuring worker) into dist/server and the
  * page into dist/web. Plain Node, no TypeScript: npm runs it right after `npm ci`. A part whose sources have not changed
- * since it was built is left as it is; `--force` builds it anyway.
+ * since it was built is left as it is; `--force` builds it anyway. `--program` leaves the page out.
  */
 import { createHash } from 'node:crypto';
 import { existsSync } from 'node:fs';
@@ -107,4 +107,5 @@ async function part(what, outdir, sources, run) {
 process.chdir(PROGRAM_DIR);
 const SHARED = ['src/', 'package-lock.json'];
 await part('program', 'dist/server', ['server/', ...SHARED], buildProgram);
-if (existsSync('web/index.html')) await part('page', 'dist/web', ['web/', 'vite.config.ts', ...SHARED], buildPage);
+if (existsSync('web/index.html') && !process.argv.includes('--program'))
+  await part('page', 'dist/web', ['web/', 'vite.config.ts', ...SHARED], buildPage);
