@@ -181,13 +181,14 @@ function specimen(
     const bar: Bar = { ...a, halves: 'a' };
     return { bars: [bar], halves: [{ bar, half: 'a', turnRad: 0 }], gapR: 0, roughnessR };
   }
-  if (random.chance(0.55)) {
+  // Halves joined by a step in view lie as they broke: turned or shifted, they would run into one another.
+  if (random.chance(0.55) || stepShows(course)) {
     const bar: Bar = { ...a, halves: 'both' };
     const halves = (['a', 'b'] as const).map((half): HalfTrace => ({ bar, half, turnRad: 0 }));
     return { bars: [bar], halves, gapR: recipe.gapR, roughnessR };
   }
   // The second half was laid down a little turned, shifted or askew. It is moved apart as far as that needs room.
-  const turnRad = stepShows(course) ? 0 : random.normal(0, 0.035);
+  const turnRad = random.normal(0, 0.035);
   const yawDeg = random.normal(0, 0.5);
   const shift = random.normal(0, 0.02);
   const room = roomToTurn(course.profile, turnRad) + Math.abs(yawDeg * 0.0175) + 0.5 * Math.abs(shift);
