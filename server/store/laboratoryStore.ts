@@ -13,6 +13,7 @@ import type {
 } from '../../src/records/laboratoryRecords.ts';
 import type { Reading } from '../../src/records/reading.ts';
 import type { Test, TestInput } from '../../src/records/test.ts';
+import { type BulkInsert, sqliteBulkInsert } from './bulkInsert.ts';
 import type { DataFolder } from './dataFolder.ts';
 import { identityOf, testOf } from './documents.ts';
 import { type HistoryEntry, historyOfTest } from './history.ts';
@@ -86,12 +87,14 @@ export class LaboratoryStore implements LaboratoryRecords {
   readonly #db: Db;
   readonly #raw: Database.Database;
   readonly #clock: () => number;
+  readonly #bulkInsert: BulkInsert;
 
   constructor({ folder, db, raw, clock }: OpenedStore) {
     this.folder = folder;
     this.#db = db;
     this.#raw = raw;
     this.#clock = clock;
+    this.#bulkInsert = sqliteBulkInsert(raw);
   }
 
   #change<Result>(work: (db: Db) => Promise<Result>): Promise<Result> {
@@ -176,7 +179,7 @@ export class LaboratoryStore implements LaboratoryRecords {
     const triedOut = new Error('a dry run is undone');
     try {
       await this.#change(async (db) => {
-        kept = await keepLogEntries(db, entries, this.#clock, note);
+        kept = await keepLogEntries(db, entries, { clock: this.#clock, note, bulkInsert: this.#bulkInsert });
         if (dryRun) throw triedOut;
       });
     } catch (error) {

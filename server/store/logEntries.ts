@@ -3,6 +3,7 @@ import { hasSameReading } from '../../src/log/node/keepEntries.ts';
 import type { KeptLogEntry, LogEntry } from '../../src/records/laboratoryRecords.ts';
 import type { Reading } from '../../src/records/reading.ts';
 import type { TestInput } from '../../src/records/test.ts';
+import type { BulkInsert } from './bulkInsert.ts';
 import { fieldsOf, identityOf, readingOf, testOf } from './documents.ts';
 import { readingRow, readingsOfTests } from './readings.ts';
 import type { ReadingTable, StoreSchema, TestRecord } from './schema.ts';
@@ -10,9 +11,6 @@ import { standingColumns } from './standing.ts';
 import { type ChangeNote, newTestRow, replaceFields } from './testRows.ts';
 
 type Db = Kysely<StoreSchema>;
-
-/** Rows written by one statement: a statement of SQLite takes 32,766 values, a test has 25. */
-const ROWS_A_STATEMENT = 400;
 
 /** What is known about a test while a batch is worked through. */
 interface Known {
@@ -63,16 +61,17 @@ async function knownTests(db: Db, entries: readonly LogEntry[]): Promise<Map<str
   );
 }
 
-async function insertRows<Row extends object>(rows: readonly Row[], insert: (rows: Row[]) => Promise<unknown>) {
-  for (let i = 0; i < rows.length; i += ROWS_A_STATEMENT) await insert(rows.slice(i, i + ROWS_A_STATEMENT));
+interface KeepOptions {
+  readonly clock: () => number;
+  readonly note: ChangeNote;
+  readonly bulkInsert: BulkInsert;
 }
 
 /** Keeps the rows of a log inside a transaction; see `LaboratoryRecords.upsertLogEntries`. */
 export async function keepLogEntries(
   db: Db,
   entries: readonly LogEntry[],
-  clock: () => number,
-  note: ChangeNote,
+  { clock, note, bulkInsert }: KeepOptions,
 ): Promise<KeptLogEntry[]> {
   const known = await knownTests(db, entries);
   const newReadings: ReadingTable[] = [];
@@ -123,7 +122,7 @@ export async function keepLogEntries(
     if (!test.isNew) await db.updateTable('tests').set(standing).where('id', '=', test.record.id).execute();
   }
   const newTests = tests.filter((test) => test.isNew).map((test) => test.record);
-  await insertRows(newTests, (rows) => db.insertInto('tests').values(rows).execute());
-  await insertRows(newReadings, (rows) => db.insertInto('readings').values(rows).execute());
+  await bulkInsert(db, 'tests', newTests);
+  await bulkInsert(db, 'readings', newReadings);
   return kept;
 }

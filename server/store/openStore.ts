@@ -16,6 +16,8 @@ function openDatabase(folder: DataFolder): { raw: Database.Database; db: Kysely<
   raw.pragma('synchronous = FULL');
   raw.pragma('foreign_keys = ON');
   raw.pragma('cache_size = -65536');
+  // Large imports change the same index pages again and again: they are written back once, not in every batch.
+  raw.pragma('wal_autocheckpoint = 10000');
   return { raw, db: new Kysely<StoreSchema>({ dialect: new SqliteDialect({ database: raw }) }) };
 }
 
