@@ -85,18 +85,20 @@ export function measureTrace(input: {
   readonly frame: SpecimenFrame;
   readonly frameUncertainty: FrameUncertainty;
   readonly tracePx: readonly PhotoPoint[];
+  /** The two lips of a gap, where they are seen apart: two measurements of the same plane. */
+  readonly lipsPx?: readonly [readonly PhotoPoint[], readonly PhotoPoint[]];
   readonly cameraTiltStandardUncertaintyDeg: number;
   readonly independentLimit?: number;
   /** Standard uncertainty of one trace point across the trace, px. */
   readonly pointUncertaintyPx: number;
 }): TraceMeasurement | null {
   const { frame, frameUncertainty: u, tracePx } = input;
-  const fitWith = (f: SpecimenFrame, bowShift = 0): TraceFit | null => {
-    const surface = tracePx.map((p) => toSurface(f, p));
+  const fitWith = (f: SpecimenFrame, points = tracePx): TraceFit | null => {
+    const surface = points.map((p) => toSurface(f, p));
     const middle = surface.reduce((sum, p) => sum + p.x, 0) / Math.max(1, surface.length);
     const offset = middle - f.cameraAlongRadii;
     const bow = cameraBow(f, u, offset, input.cameraTiltStandardUncertaintyDeg);
-    return fitTrace(surface, { mean: bow.mean + bowShift, sigma: bow.sigma }, input.independentLimit);
+    return fitTrace(surface, bow, input.independentLimit);
   };
   const fit = fitWith(frame);
   if (fit === null) return null;
@@ -125,6 +127,14 @@ export function measureTrace(input: {
     { ...frame, cameraDistanceRadii: k * u.cameraDistanceFactor },
     { ...frame, cameraDistanceRadii: Math.max(3, k / u.cameraDistanceFactor) },
   );
+
+  const [low, high] = input.lipsPx ?? [];
+  const lowFit = low === undefined ? null : fitWith(frame, low);
+  const highFit = high === undefined ? null : fitWith(frame, high);
+  const lips =
+    lowFit === null || highFit === null || lowFit.shape !== highFit.shape
+      ? 0
+      : planeAngleDistanceDeg(lowFit.planeAngleDeg, highFit.planeAngleDeg) / 2;
 
   const tangent = Math.abs(Math.tan(degToRad(Math.min(89, Math.abs(fit.planeAngleDeg)))));
   const tilt = Math.sin(degToRad(input.cameraTiltStandardUncertaintyDeg)) ** 2 / 2;
@@ -172,6 +182,11 @@ export function measureTrace(input: {
       `camera ${(k / 2).toFixed(0)} diameters away, known to a factor of ${u.cameraDistanceFactor}`,
     ),
     line('pixel-sampling', sampling, 'B', `a trace point is placed to ${input.pointUncertaintyPx.toFixed(2)} px`),
+    ...(input.lipsPx === undefined
+      ? []
+      : [
+          line('lips', lips, 'A', 'half the difference between the two lips of the gap, two measurements of one plane'),
+        ]),
     line('model-choice', fit.modelUncertaintyDeg, 'B', 'difference between shapes that fit about as well'),
   ];
   const combined = Math.sqrt(budget.reduce((sum, b) => sum + b.standardUncertaintyDeg ** 2, 0));

@@ -5,6 +5,8 @@ import type { UnrolledMap } from './unrolledMap.ts';
 /** A trace moved to the middle between the two lips of its gap. */
 export interface CentredTrace {
   readonly points: readonly SurfacePoint[];
+  /** The two lips by themselves; a point without lips of its own takes the median half gap. */
+  readonly lips: readonly [readonly SurfacePoint[], readonly SurfacePoint[]];
   /** Median distance between the lips, radii. */
   readonly gapRadii: number;
   /** Scatter of the centre of neighbouring points, radii: how well one point is placed. */
@@ -22,6 +24,7 @@ export function centreOfGap(map: UnrolledMap, path: readonly SurfacePoint[], rea
   const span = Math.max(3, Math.round(0.05 / map.stepRadii));
   const shifts = new Float64Array(n).fill(Number.NaN);
   const gaps: number[] = [];
+  const halfGaps = new Float64Array(n).fill(Number.NaN);
   const directions: { x: number; phi: number }[] = [];
   const profile = [
     new Float64Array(2 * half + 1),
@@ -42,6 +45,7 @@ export function centreOfGap(map: UnrolledMap, path: readonly SurfacePoint[], rea
     if (lips === null) continue;
     shifts[i] = ((lips.low + lips.high) / 2 - half) * step;
     gaps.push((lips.high - lips.low) * step);
+    halfGaps[i] = ((lips.high - lips.low) / 2) * step;
   }
   // A point without lips of its own, or far from its neighbours', takes the neighbours' shift.
   const smooth = new Float64Array(n);
@@ -60,9 +64,17 @@ export function centreOfGap(map: UnrolledMap, path: readonly SurfacePoint[], rea
     x: p.x + (smooth[i] as number) * (directions[i]?.x ?? 0),
     phi: p.phi + (smooth[i] as number) * (directions[i]?.phi ?? 0),
   }));
+  const gapRadii = gaps.length > 0 ? medianOf(gaps) : 0;
+  const lip = (side: 1 | -1) =>
+    points.map((p, i) => {
+      const own = halfGaps[i] as number;
+      const half = side * (Number.isFinite(own) ? own : gapRadii / 2);
+      return { x: p.x + half * (directions[i]?.x ?? 0), phi: p.phi + half * (directions[i]?.phi ?? 0) };
+    });
   return {
     points,
-    gapRadii: gaps.length > 0 ? medianOf(gaps) : 0,
+    lips: [lip(-1), lip(1)],
+    gapRadii,
     pointScatterRadii: differences.length > 4 ? 1.4826 * medianOf(differences) : map.stepRadii,
   };
 }

@@ -1,11 +1,12 @@
+import { planeAngleDistanceDeg } from '../angle.ts';
 import type { Candidate, EndOfHalf, HalfCandidate } from './candidates.ts';
-import { CHOICE_WEIGHTS } from './choiceWeights.ts';
+import { ACCEPTANCE_WEIGHTS, CHOICE_WEIGHTS } from './choiceWeights.ts';
 import { fitTrace, type TraceFit } from './traceFit.ts';
 import type { SurfacePoint } from './unroll.ts';
 
 /**
  * One way to read the photo: this candidate as a pair with a gap, or as a half with this end broken. `features` are what
- * speaks for and against it; `probability` that it is the specimen with its true trace.
+ * speaks for and against it, `value` their weighted sum: of two readings of a photo the one of larger value is likelier right.
  */
 export interface PhotoReading {
   readonly view: 'pair' | 'half';
@@ -15,7 +16,7 @@ export interface PhotoReading {
   readonly points: readonly SurfacePoint[];
   readonly fit: TraceFit | null;
   readonly features: Readonly<Record<string, number>>;
-  readonly probability: number;
+  readonly value: number;
 }
 
 /** Bow of the quick fit: nothing known of the camera's squareness yet. */
@@ -56,7 +57,8 @@ export function readAsPair(candidate: Candidate): PhotoReading | null {
     gapUnlike: Math.log(trace.gapUnlike + 3),
     sides: trace.gapUnlike > 0 ? clipped(Math.log((trace.gapUnlike + 3) / (trace.sidesUnlike + 3)), -1.5, 3) : 1,
     unique: clipped(Math.log(trace.secondCostPerRow / trace.costPerRow), 0, 3),
-    beyond: clipped(-Math.log(Math.min(...trace.beyondCosts)), 0, 3),
+    beyondOne: clipped(-Math.log(Math.min(...trace.beyondCosts)), 0, 3),
+    beyondBoth: clipped(-Math.log(Math.max(...trace.beyondCosts)), 0, 3),
     ...shapeFeatures(fit),
   };
   return {
@@ -66,7 +68,7 @@ export function readAsPair(candidate: Candidate): PhotoReading | null {
     points: trace.points,
     fit,
     features,
-    probability: probabilityOf('pair', features),
+    value: weighted('pair', features),
   };
 }
 
@@ -102,13 +104,49 @@ export function readAsHalf(half: HalfCandidate, end: EndOfHalf): PhotoReading | 
     points: rim.points,
     fit,
     features,
-    probability: probabilityOf('half', features),
+    value: weighted('half', features),
   };
 }
 
-function probabilityOf(view: 'pair' | 'half', features: Readonly<Record<string, number>>): number {
+function weighted(view: 'pair' | 'half', features: Readonly<Record<string, number>>): number {
   const weights: Readonly<Record<string, number>> = CHOICE_WEIGHTS[view];
   let sum = weights.constant ?? 0;
   for (const [name, value] of Object.entries(features)) sum += (weights[name] ?? 0) * value;
+  return sum;
+}
+
+/** The part of a reading that the comparison looks at. */
+export interface ComparedReading {
+  readonly view: 'pair' | 'half';
+  readonly value: number;
+  readonly fit: { readonly planeAngleDeg: number } | null;
+  readonly features: Readonly<Record<string, number>>;
+}
+
+/** What speaks for trusting the best of the readings of a photo: its own features, its value, its lead over others that say otherwise. */
+export function acceptanceFeatures(sorted: readonly ComparedReading[]): Readonly<Record<string, number>> {
+  const best = sorted[0];
+  if (best === undefined) return {};
+  const rival = sorted.find(
+    (r) =>
+      r.fit === null ||
+      best.fit === null ||
+      r.view !== best.view ||
+      planeAngleDistanceDeg(r.fit.planeAngleDeg, best.fit.planeAngleDeg) > 6,
+  );
+  const own = Object.fromEntries(Object.entries(best.features).map(([name, v]) => [`${best.view}.${name}`, v]));
+  return {
+    ...own,
+    half: best.view === 'half' ? 1 : 0,
+    value: best.value,
+    lead: rival === undefined ? 4 : clipped(best.value - rival.value, 0, 4),
+  };
+}
+
+/** Probability that the best of the readings is right, 0 to 1 (logistic regression on rendered photos). */
+export function acceptance(sorted: readonly ComparedReading[]): number {
+  const features = acceptanceFeatures(sorted);
+  let sum = ACCEPTANCE_WEIGHTS.constant ?? 0;
+  for (const [name, value] of Object.entries(features)) sum += (ACCEPTANCE_WEIGHTS[name] ?? 0) * value;
   return 1 / (1 + Math.exp(-sum));
 }
