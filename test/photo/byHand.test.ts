@@ -4,30 +4,22 @@ import { LabError } from '../../src/errors.ts';
 import { type ByHandInput, measureByHand } from '../../src/photo/byHand.ts';
 import type { PointPx } from '../../src/records/reading.ts';
 import type { BreakKind } from '../pictures/breaks.ts';
-import { type PhotoPlan, planBreakPhoto } from '../pictures/photoScene.ts';
+import { type BreakTruth, type PhotoPlan, planBreakPhoto } from '../pictures/photoScene.ts';
 import { Random } from '../pictures/random.ts';
 
-interface Truth {
-  readonly kind: BreakKind;
-  readonly visibleFrontThetaDeg: number | null;
-  readonly betaDeg: number | null;
-  readonly traceImagePx: readonly PointPx[][];
-  readonly axisImagePx: [PointPx, PointPx];
-  readonly diameterPx: number;
-}
-
 /** What a careful hand would set: about 40 points of the first lip, the true axis and diameter. */
-function setByHand(plan: PhotoPlan): { truth: Truth; input: ByHandInput } {
-  const truth = plan.truth as unknown as Truth;
+function setByHand(plan: PhotoPlan<BreakTruth>): { truth: BreakTruth; input: ByHandInput } {
+  const { truth } = plan;
+  const [from, to] = truth.axisImagePx;
   const lip = truth.traceImagePx[0] ?? [];
   const every = Math.max(1, Math.floor(lip.length / 40));
   const { widthPx, heightPx, focalPx } = plan.scene.camera;
   return {
     truth,
     input: {
-      axisPx: truth.axisImagePx,
+      axisPx: [[...from], [...to]],
       diameterPx: truth.diameterPx,
-      tracePx: lip.filter((_, i) => i % every === 0),
+      tracePx: lip.filter((_, i) => i % every === 0).map(([x, y]): PointPx => [x, y]),
       widthPx,
       heightPx,
       focalOverLongSide: focalPx / Math.max(widthPx, heightPx),

@@ -11,13 +11,6 @@ export interface RenderedPhoto {
   upright(): Sharp;
 }
 
-interface PairTruth {
-  readonly visibleFrontThetaDeg: number;
-  readonly diameterPx: number;
-  readonly lipGapPx: { readonly median: number };
-  readonly segments: readonly { readonly closingStep: boolean }[];
-}
-
 /** The first seed whose pair is wide and open enough that any measurement should manage it, rendered. */
 export function easyPair(change: Partial<PhotoWish> = {}): RenderedPhoto {
   for (let seed = 1; ; seed++) {
@@ -30,7 +23,8 @@ export function easyPair(change: Partial<PhotoWish> = {}): RenderedPhoto {
       diameterPx: 240,
     } as const;
     const plan = planBreakPhoto({ view: 'pair', kind: 'helix', ...wish, ...change }, random);
-    const { diameterPx, lipGapPx, visibleFrontThetaDeg, segments } = plan.truth as unknown as PairTruth;
+    const { diameterPx, lipGapPx, visibleFrontThetaDeg, segments } = plan.truth;
+    if (lipGapPx === undefined || visibleFrontThetaDeg === null) continue;
     if (lipGapPx.median < 3 || lipGapPx.median > 12 || diameterPx < 110 || Math.abs(visibleFrontThetaDeg) < 30)
       continue;
     if (segments.some(({ closingStep }) => closingStep)) continue;

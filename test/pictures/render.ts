@@ -86,7 +86,7 @@ class SceneTracer {
   }
 
   private bench(dx: number, dy: number, dz: number): number {
-    const { scene, camera, surface } = this;
+    const { scene, camera } = this;
     const t = (scene.benchZ - camera.position.z) / dz;
     if (!(t > 0)) {
       this.red = scene.sky[0];
@@ -99,7 +99,6 @@ class SceneTracer {
     const id = this.paintBench(x, y);
     this.lightOnBench(x, y, id);
     this.shine(0, 0, 1, dx, dy, dz, 1);
-    if (surface.gloss === 0) return id;
     return id;
   }
 

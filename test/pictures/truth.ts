@@ -1,5 +1,5 @@
 import type { Bar } from './bar.ts';
-import { Camera, type CameraRecipe, type PixelPoint, type ScenePoint } from './camera.ts';
+import type { Camera, PixelPoint, ScenePoint } from './camera.ts';
 
 /** A stretch of the nominal trace between two azimuths, radians. */
 export interface TracePiece {
@@ -242,5 +242,3 @@ function toStretch(p: PixelPoint, a: PixelPoint, b: PixelPoint): number {
   const t = Math.min(1, Math.max(0, ((p.xPx - a.xPx) * dx + (p.yPx - a.yPx) * dy) / square));
   return Math.hypot(p.xPx - a.xPx - t * dx, p.yPx - a.yPx - t * dy);
 }
-
-export const cameraOf = (recipe: CameraRecipe): Camera => new Camera(recipe);

@@ -4,20 +4,14 @@ import { helix } from './breaks.ts';
 import type { CameraRecipe } from './camera.ts';
 import { clutterBeside, endOn, type FlatThing, plate, rule } from './clutter.ts';
 import { Fracture } from './fracture.ts';
+import { focalLength, pictureSize, viewFrom } from './framing.ts';
+import { LIGHT_NAMES, lightOf } from './lights.ts';
 import { MATERIAL_NAMES, type Material, makeMaterial, type Rgb } from './materials.ts';
 import { pencilMaterial } from './pencil.ts';
-import {
-  cameraWork,
-  focalLength,
-  LIGHT_NAMES,
-  lightOf,
-  type PhotoPlan,
-  pictureSize,
-  storing,
-  viewFrom,
-} from './photoScene.ts';
+import type { NoBreakTruth, PhotoPlan } from './photoScene.ts';
 import type { Random } from './random.ts';
 import type { Scene } from './render.ts';
+import { cameraWork, storing } from './shooting.ts';
 
 /** Pictures a bench produces that hold no break to measure. */
 export const NEGATIVE_NAMES = [
@@ -188,7 +182,11 @@ function contents(name: NegativeName, random: Random, pixelsPerRadius: number): 
 }
 
 /** A photo without a measurable break: the right answer is a refusal. */
-export function planPhotoWithoutBreak(name: NegativeName, random: Random, wantedMegapixels?: number): PhotoPlan {
+export function planPhotoWithoutBreak(
+  name: NegativeName,
+  random: Random,
+  wantedMegapixels?: number,
+): PhotoPlan<NoBreakTruth> {
   const megapixels = wantedMegapixels ?? random.uniform(1, 3);
   const scale = Math.sqrt(megapixels / 2);
   const size = pictureSize(random, megapixels);

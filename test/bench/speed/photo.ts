@@ -11,8 +11,8 @@ async function helicalPair(megapixels: number): Promise<Uint8Array> {
   for (let seed = 1; ; seed++) {
     const random = new Random(seed);
     const plan = planBreakPhoto({ ...wish, material: 'chalk', diameterPx: 260 }, random);
-    const { lipGapPx, diameterPx } = plan.truth as { lipGapPx: { median: number }; diameterPx: number };
-    if (lipGapPx.median > 4 && diameterPx > 200) return storePhoto(plan, random);
+    const { lipGapPx, diameterPx } = plan.truth;
+    if (lipGapPx !== undefined && lipGapPx.median > 4 && diameterPx > 200) return storePhoto(plan, random);
   }
 }
 
