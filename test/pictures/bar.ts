@@ -1,6 +1,7 @@
 import type { ScenePoint } from './camera.ts';
 import type { Fracture } from './fracture.ts';
 import type { Material } from './materials.ts';
+import { smoothstep } from './smoothstep.ts';
 
 /** A round bar or tube in the scene. Its own frame has unit radius, x along its axis, z towards the camera. */
 export interface Bar {
@@ -296,9 +297,4 @@ export class BarTracer {
     const length = smoothstep(start - 0.8, start + 0.8, x) * (1 - smoothstep(end - 0.8, end + 0.8, x));
     return 1 - (0.8 * length) / square;
   }
-}
-
-export function smoothstep(from: number, to: number, value: number): number {
-  const t = Math.min(1, Math.max(0, (value - from) / (to - from)));
-  return t * t * (3 - 2 * t);
 }

@@ -1,5 +1,5 @@
 import type { Random } from './random.ts';
-import type { Lamp, Scene } from './render.ts';
+import type { Lamp, Scene } from './sceneTracer.ts';
 
 export const LIGHT_NAMES = ['hard shadow', 'diffuse', 'two lamps', 'highlight', 'window'] as const;
 export type LightName = (typeof LIGHT_NAMES)[number];

@@ -1,5 +1,6 @@
 import type { Bar } from './bar.ts';
-import { type Material, makeMaterial, type Rgb } from './materials.ts';
+import { makeMaterial } from './finishes.ts';
+import type { Material, Rgb } from './materials.ts';
 import type { Random } from './random.ts';
 
 /** Painted flats of a six-sided pencil over any other material. */

@@ -4,12 +4,12 @@ import { breakSpecimen } from './brokenSpecimen.ts';
 import { Camera, type PixelPoint } from './camera.ts';
 import { clutterBeside } from './clutter.ts';
 import type { CameraWork } from './develop.ts';
+import { MATERIAL_NAMES, makeMaterial } from './finishes.ts';
 import { frameBreak, pictureSize, type View } from './framing.ts';
 import { LIGHT_NAMES, type LightName, lightOf } from './lights.ts';
-import { MATERIAL_NAMES, makeMaterial } from './materials.ts';
 import { pencilBeside } from './pencil.ts';
 import type { Random } from './random.ts';
-import type { Scene } from './render.ts';
+import type { Scene } from './sceneTracer.ts';
 import { cameraWork, type Storing, storing } from './shooting.ts';
 import {
   axisPx,

@@ -1,8 +1,8 @@
 import { BACKGROUND_NAMES } from './backgrounds.ts';
 import type { BreakKind } from './breaks.ts';
+import { MATERIAL_NAMES } from './finishes.ts';
 import type { View } from './framing.ts';
 import { LIGHT_NAMES } from './lights.ts';
-import { MATERIAL_NAMES } from './materials.ts';
 import { type PhotoPlan, type PhotoWish, planBreakPhoto } from './photoScene.ts';
 import { Random } from './random.ts';
 import { NEGATIVE_NAMES, planPhotoWithoutBreak } from './withoutBreak.ts';

@@ -5,7 +5,8 @@ import { Camera, type CameraRecipe } from './camera.ts';
 import { Fracture } from './fracture.ts';
 import type { Material } from './materials.ts';
 import { planSet } from './photoSet.ts';
-import { render, type Scene } from './render.ts';
+import { render } from './render.ts';
+import type { Scene } from './sceneTracer.ts';
 import {
   axisPx,
   type HalfTrace,

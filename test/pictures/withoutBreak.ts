@@ -3,14 +3,15 @@ import type { Bar } from './bar.ts';
 import { helix } from './breaks.ts';
 import type { CameraRecipe } from './camera.ts';
 import { clutterBeside, endOn, type FlatThing, plate, rule } from './clutter.ts';
+import { MATERIAL_NAMES, makeMaterial } from './finishes.ts';
 import { Fracture } from './fracture.ts';
 import { focalLength, pictureSize, viewFrom } from './framing.ts';
 import { LIGHT_NAMES, lightOf } from './lights.ts';
-import { MATERIAL_NAMES, type Material, makeMaterial, type Rgb } from './materials.ts';
+import type { Material, Rgb } from './materials.ts';
 import { pencilMaterial } from './pencil.ts';
 import type { NoBreakTruth, PhotoPlan } from './photoScene.ts';
 import type { Random } from './random.ts';
-import type { Scene } from './render.ts';
+import type { Scene } from './sceneTracer.ts';
 import { cameraWork, storing } from './shooting.ts';
 
 /** Pictures a bench produces that hold no break to measure. */
