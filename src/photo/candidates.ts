@@ -6,9 +6,11 @@ import { insidePhoto, type RimTrace, searchRim } from './rimTrace.ts';
 import type { SpecimenFrame } from './unroll.ts';
 
 /** Radius, picture px, at which candidates are compared: enough to see a gap, small enough to be quick. */
-const COMPARED_RADIUS_PX = 40;
+const COMPARED_RADIUS_PX = 32;
 const MOST_HYPOTHESES = 10;
 const MOST_HALVES = 6;
+/** Steps of the map in which rims are searched, a radius: the rim bounds a region, it needs no fine steps. */
+const RIM_STEPS = 26;
 /** Widths of gap looked for, in steps of the compared map: from a crack to a third of the diameter. */
 const GAP_SIZES = [3, 5, 9, 17];
 
@@ -46,8 +48,7 @@ function valueOfPair(hypothesis: SpecimenHypothesis, refined: RefinedFrame | nul
 }
 
 /** Candidates of a photo, best pair first. */
-export function findCandidates(picture: Picture): Candidate[] {
-  const levels = levelsOf(picture);
+export function findCandidates(picture: Picture, levels: Levels = levelsOf(picture)): Candidate[] {
   const hypotheses = detectSpecimens(picture, MOST_HYPOTHESES);
   const best = hypotheses.reduce((m, h) => Math.max(m, h.score), Number.NEGATIVE_INFINITY);
   const candidates = hypotheses
@@ -61,9 +62,10 @@ export function findCandidates(picture: Picture): Candidate[] {
   return candidates.sort((a, b) => b.pairValue - a.pairValue);
 }
 
-type Levels = (factor: number) => Picture;
+/** The picture reduced by a whole factor, made once. */
+export type Levels = (factor: number) => Picture;
 
-function levelsOf(picture: Picture): Levels {
+export function levelsOf(picture: Picture): Levels {
   const made = new Map<number, Picture>();
   return (factor) => {
     const known = made.get(factor);
@@ -110,7 +112,9 @@ function candidateOf(levels: Levels, hypothesis: SpecimenHypothesis, bestScore: 
  */
 function widened(start: Candidate, candidates: readonly Candidate[], levels: Levels, bestScore: number): Candidate {
   let best = start;
-  for (let round = 0; round < 3; round++) {
+  for (let round = 0; round < 2; round++) {
+    // Only a gap that runs on is followed outwards.
+    if (best.trace === null || Math.min(...best.trace.beyondCosts) > RUNS_ON) break;
     const wider = [...candidates, ...best.hypothesis.wider().map((h) => candidateOf(levels, h, bestScore))]
       .filter((c) => c !== best && contains(c.frame, best.frame) && crossedAlike(c, best))
       .sort((a, b) => b.pairValue - a.pairValue)[0];
@@ -119,6 +123,9 @@ function widened(start: Candidate, candidates: readonly Candidate[], levels: Lev
   }
   return best;
 }
+
+/** Continuation below this cost a row is taken for the same gap. */
+const RUNS_ON = 0.6;
 
 function contains(outer: SpecimenFrame, inner: SpecimenFrame): boolean {
   const turn = Math.abs(outer.alongX * inner.alongY - outer.alongY * inner.alongX);
@@ -159,11 +166,11 @@ function crossedAlike(outer: Candidate, inner: Candidate): boolean {
 }
 
 /** The candidates most like a specimen, with what is seen at their ends. */
-export function findHalves(picture: Picture, candidates: readonly Candidate[]): HalfCandidate[] {
+export function findHalves(levels: Levels, candidates: readonly Candidate[]): HalfCandidate[] {
   const likely = [...candidates].sort((a, b) => b.hypothesis.score - a.hypothesis.score).slice(0, MOST_HALVES);
   return likely.map((candidate) => {
     const factor = Math.max(1, Math.floor(candidate.frame.radiusPx / COMPARED_RADIUS_PX));
-    const small = shrink(picture, factor);
+    const small = levels(factor);
     const frame = scaleFrame(candidate.frame, 1 / factor);
     const rims = ([1, -1] as const).map((end): EndOfHalf => {
       const x = end === 1 ? candidate.toX : candidate.fromX;
@@ -171,7 +178,7 @@ export function findHalves(picture: Picture, candidates: readonly Candidate[]): 
         insidePhoto(small, frame, { x: x + end * 0.4, phi: side * SEARCHED_HALF_WIDTH }, 1),
       );
       if (runsOut) return { end, cutByPhoto: true, rim: null };
-      const rim = searchRim(small, frame, candidate, end, Math.max(1 / COMPARED_RADIUS_PX, 1 / frame.radiusPx));
+      const rim = searchRim(small, frame, candidate, end, Math.max(1 / RIM_STEPS, 1 / frame.radiusPx));
       return { end, cutByPhoto: false, rim };
     });
     return { candidate, rims };

@@ -1,7 +1,7 @@
 import { planeAngleDistanceDeg } from '../angle.ts';
 import type { Candidate, EndOfHalf, HalfCandidate } from './candidates.ts';
 import { ACCEPTANCE_WEIGHTS, CHOICE_WEIGHTS } from './choiceWeights.ts';
-import { fitTrace, type TraceFit } from './traceFit.ts';
+import { fitTrace, QUICK_POINTS, type TraceFit } from './traceFit.ts';
 import type { SurfacePoint } from './unroll.ts';
 
 /**
@@ -21,6 +21,8 @@ export interface PhotoReading {
 
 /** Bow of the quick fit: nothing known of the camera's squareness yet. */
 const ANY_BOW = { mean: 0, sigma: 0.08 };
+
+const quickFit = (points: readonly SurfacePoint[]) => fitTrace(points, ANY_BOW, 200, QUICK_POINTS);
 
 const clipped = (value: number, low: number, high: number) => Math.max(low, Math.min(high, value));
 
@@ -47,7 +49,7 @@ function specimenFeatures(candidate: Candidate): Record<string, number> {
 export function readAsPair(candidate: Candidate): PhotoReading | null {
   const { trace } = candidate;
   if (trace === null) return null;
-  const fit = fitTrace(trace.points, ANY_BOW);
+  const fit = quickFit(trace.points);
   const gap = -Math.log(trace.costPerRow);
   const features = {
     ...specimenFeatures(candidate),
@@ -75,9 +77,9 @@ export function readAsPair(candidate: Candidate): PhotoReading | null {
 export function readAsHalf(half: HalfCandidate, end: EndOfHalf): PhotoReading | null {
   const { rim } = end;
   if (rim === null) return null;
-  const fit = fitTrace(rim.points, ANY_BOW);
+  const fit = quickFit(rim.points);
   const other = half.rims.find((r) => r.end !== end.end);
-  const otherFit = other?.rim == null ? null : fitTrace(other.rim.points, ANY_BOW);
+  const otherFit = other?.rim == null ? null : quickFit(other.rim.points);
   const square = (f: TraceFit | null) =>
     f === null || f.shape === 'mixed' || f.shape === 'longitudinal'
       ? 0

@@ -90,7 +90,7 @@ function hypothesisOf(
     toPx: half,
     score: pair.score,
     terms: pair.terms,
-    wider: () => findWiderPairs(grid, edges, pair, 3).map((p) => hypothesisOf(p, grid, edges, k)),
+    wider: () => findWiderPairs(grid, edges, pair, 2).map((p) => hypothesisOf(p, grid, edges, k)),
   };
 }
 

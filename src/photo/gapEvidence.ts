@@ -14,6 +14,8 @@ export interface GapEvidence {
 /** A gap lighter than its surroundings (background or a lit wall showing through) is possible but rarer. */
 const LIGHT_GAP_WEIGHT = 0.6;
 const FLOOR = 2.2;
+/** Colour steps are smaller than lightness steps and less noisy. */
+const COLOUR_WEIGHT = 1.4;
 
 export function gapEvidence(map: UnrolledMap, gapSizes: readonly number[]): GapEvidence {
   const { rows, columns } = map;
@@ -36,50 +38,56 @@ function valley(
   lineStride: number,
   stride: number,
 ): void {
-  const sums = [new Float64Array(length + 1), new Float64Array(length + 1), new Float64Array(length + 1)] as const;
-  const channelWeight = [1, 1.4, 1.4] as const;
+  const s0 = new Float64Array(length + 1);
+  const s1 = new Float64Array(length + 1);
+  const s2 = new Float64Array(length + 1);
+  const [p0, p1, p2] = map.planes;
+  const { seen } = map;
   for (let line = 0; line < lines; line++) {
     const base = line * lineStride;
-    for (let k = 0; k < 3; k++) {
-      const plane = map.planes[k as 0 | 1 | 2];
-      const sum = sums[k as 0 | 1 | 2];
-      let total = 0;
-      for (let i = 0; i < length; i++) {
-        total += plane[base + i * stride] as number;
-        sum[i + 1] = total;
-      }
+    let t0 = 0;
+    let t1 = 0;
+    let t2 = 0;
+    for (let i = 0, at = base; i < length; i++, at += stride) {
+      t0 += p0[at] as number;
+      t1 += COLOUR_WEIGHT * (p1[at] as number);
+      t2 += COLOUR_WEIGHT * (p2[at] as number);
+      s0[i + 1] = t0;
+      s1[i + 1] = t1;
+      s2[i + 1] = t2;
     }
     for (const g of gapSizes) {
       const half = (g - 1) >> 1;
       const side = Math.max(2, g);
+      const perGap = 1 / g;
+      const perSide = 1 / side;
       for (let i = side + half + 1; i < length - side - half - 2; i++) {
         const a0 = i - half;
-        const a1 = i - half + g;
-        if (map.seen[base + (a0 - side) * stride] === 0 || map.seen[base + (a1 + side - 1) * stride] === 0) continue;
-        let dot = 0;
-        let dark = true;
-        let leftSize = 0;
-        let rightSize = 0;
-        for (let k = 0; k < 3; k++) {
-          const sum = sums[k as 0 | 1 | 2];
-          const centre = ((sum[a1] as number) - (sum[a0] as number)) / g;
-          const left =
-            (((sum[a0] as number) - (sum[a0 - side] as number)) / side - centre) *
-            (channelWeight[k as 0 | 1 | 2] as number);
-          const right =
-            (((sum[a1 + side] as number) - (sum[a1] as number)) / side - centre) *
-            (channelWeight[k as 0 | 1 | 2] as number);
-          dot += left * right;
-          leftSize += left * left;
-          rightSize += right * right;
-          if (k === 0) dark = left > 0 && right > 0;
-        }
+        const a1 = a0 + g;
+        const b0 = a0 - side;
+        const b1 = a1 + side;
+        // Lightness first: most places are no valley in it, and colour alone is rare.
+        const c0 = ((s0[a1] as number) - (s0[a0] as number)) * perGap;
+        const l0 = ((s0[a0] as number) - (s0[b0] as number)) * perSide - c0;
+        const r0 = ((s0[b1] as number) - (s0[a1] as number)) * perSide - c0;
+        const c1 = ((s1[a1] as number) - (s1[a0] as number)) * perGap;
+        const l1 = ((s1[a0] as number) - (s1[b0] as number)) * perSide - c1;
+        const r1 = ((s1[b1] as number) - (s1[a1] as number)) * perSide - c1;
+        const c2 = ((s2[a1] as number) - (s2[a0] as number)) * perGap;
+        const l2 = ((s2[a0] as number) - (s2[b0] as number)) * perSide - c2;
+        const r2 = ((s2[b1] as number) - (s2[a1] as number)) * perSide - c2;
+        const dot = l0 * r0 + l1 * r1 + l2 * r2;
         if (dot <= 0) continue;
+        const leftSize = l0 * l0 + l1 * l1 + l2 * l2;
+        const rightSize = r0 * r0 + r1 * r1 + r2 * r2;
         // The weaker of the two sides counts, in the direction both agree on.
-        const agreed = (dot / Math.sqrt(leftSize * rightSize + 1e-9)) * Math.sqrt(Math.min(leftSize, rightSize));
-        const value = dark ? agreed : LIGHT_GAP_WEIGHT * agreed;
+        const larger = leftSize > rightSize ? leftSize : rightSize;
+        const agreed = dot / Math.sqrt(larger + 1e-9);
+        const value = l0 > 0 && r0 > 0 ? agreed : LIGHT_GAP_WEIGHT * agreed;
         const at = base + i * stride;
-        if (value > (out[at] as number)) out[at] = value;
+        if (value <= (out[at] as number)) continue;
+        if (seen[base + b0 * stride] === 0 || seen[base + (b1 - 1) * stride] === 0) continue;
+        out[at] = value;
       }
     }
   }
@@ -87,8 +95,12 @@ function valley(
 
 function quantileOf(values: Float32Array, count: number, share: number): number {
   if (count === 0) return 0;
-  const part = values.subarray(0, count).slice().sort();
-  return part[Math.min(count - 1, Math.floor(share * count))] as number;
+  // Every so-many-th value: some hundred give a quantile well enough.
+  const every = Math.max(1, Math.floor(count / 160));
+  const part = new Float32Array(Math.floor((count - 1) / every) + 1);
+  for (let i = 0, j = 0; j < part.length; i += every, j++) part[j] = values[i] as number;
+  part.sort();
+  return part[Math.min(part.length - 1, Math.floor(share * part.length))] as number;
 }
 
 /** Each row in units of its own 85th percentile: turning marks are in every column, the break is not. */

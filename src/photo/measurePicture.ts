@@ -2,7 +2,7 @@ import { handOfPlaneAngle, planeAngleDistanceDeg } from '../angle.ts';
 import type { BudgetLine, NOT_MEASURED_CODES, PlaneReading, PointPx, Warning } from '../records/reading.ts';
 import { cameraDistance, type FrameUncertainty, measureTrace, type TraceMeasurement } from './budget.ts';
 import { COVERAGE_FACTOR } from './byHand.ts';
-import { type Candidate, findCandidates, findHalves } from './candidates.ts';
+import { type Candidate, findCandidates, findHalves, levelsOf } from './candidates.ts';
 import { centreOfGap } from './centreOfGap.ts';
 import { acceptance, type PhotoReading, readAsHalf, readAsPair } from './choice.ts';
 import { searchPairTrace } from './pairTrace.ts';
@@ -101,9 +101,10 @@ const LEAST_ACCEPTANCE = 0.5;
 
 /** All ways to read the photo, the likeliest first. */
 export function readingsOf(picture: Picture): PhotoReading[] {
-  const candidates = findCandidates(picture);
+  const levels = levelsOf(picture);
+  const candidates = findCandidates(picture, levels);
   const pairs = candidates.map(readAsPair);
-  const halves = findHalves(picture, candidates).flatMap((half) => half.rims.map((end) => readAsHalf(half, end)));
+  const halves = findHalves(levels, candidates).flatMap((half) => half.rims.map((end) => readAsHalf(half, end)));
   return [...pairs, ...halves].filter((r): r is PhotoReading => r !== null).sort((a, b) => b.value - a.value);
 }
 

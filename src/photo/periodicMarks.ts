@@ -14,36 +14,50 @@ export function withoutPeriodicMarks(map: UnrolledMap): UnrolledMap {
   const period = periodOf(map);
   if (period === null) return map;
   const { rows, columns } = map;
-  const values = new Float64Array(NEIGHBOURS.length);
-  const planes = map.planes.map((plane) => {
-    const out = new Float32Array(plane.length);
-    for (let r = 0; r < rows; r++) {
-      const base = r * columns;
-      let level = 0;
-      for (let c = 0; c < columns; c++) level += plane[base + c] as number;
-      level /= columns;
-      for (let c = 0; c < columns; c++) {
-        let n = 0;
-        for (const k of NEIGHBOURS) {
-          const at = c + k * period;
-          if (at < 0 || at > columns - 1.001) continue;
-          const i = at | 0;
-          if (map.seen[base + i] !== 1 || map.seen[base + i + 1] !== 1) continue;
-          const f = at - i;
-          values[n++] = (plane[base + i] as number) * (1 - f) + (plane[base + i + 1] as number) * f;
+  // Where the neighbours of each column lie, the same for every row.
+  const at = new Int32Array(columns * NEIGHBOURS.length).fill(-1);
+  const part = new Float32Array(columns * NEIGHBOURS.length);
+  for (let c = 0; c < columns; c++) {
+    NEIGHBOURS.forEach((k, j) => {
+      const x = c + k * period;
+      if (x < 0 || x > columns - 1.001) return;
+      at[c * NEIGHBOURS.length + j] = x | 0;
+      part[c * NEIGHBOURS.length + j] = x - (x | 0);
+    });
+  }
+  const values = new Float32Array(NEIGHBOURS.length);
+  // Marks are relief: they change the light, hardly the colour.
+  const plane = map.planes[0];
+  const out = new Float32Array(plane.length);
+  for (let r = 0; r < rows; r++) {
+    const base = r * columns;
+    let level = 0;
+    for (let c = 0; c < columns; c++) level += plane[base + c] as number;
+    level /= columns;
+    for (let c = 0; c < columns; c++) {
+      let n = 0;
+      for (let j = c * NEIGHBOURS.length; j < (c + 1) * NEIGHBOURS.length; j++) {
+        const i = at[j] as number;
+        if (i < 0 || map.seen[base + i] !== 1 || map.seen[base + i + 1] !== 1) continue;
+        const f = part[j] as number;
+        const v = (plane[base + i] as number) * (1 - f) + (plane[base + i + 1] as number) * f;
+        // Kept in order as they come: at most six.
+        let place = n++;
+        while (place > 0 && (values[place - 1] as number) > v) {
+          values[place] = values[place - 1] as number;
+          place -= 1;
         }
-        if (n < 3) {
-          out[base + c] = plane[base + c] as number;
-          continue;
-        }
-        const sorted = values.subarray(0, n).slice().sort();
-        const median = ((sorted[(n - 1) >> 1] as number) + (sorted[n >> 1] as number)) / 2;
-        out[base + c] = (plane[base + c] as number) - median + level;
+        values[place] = v;
       }
+      if (n < 3) {
+        out[base + c] = plane[base + c] as number;
+        continue;
+      }
+      const median = ((values[(n - 1) >> 1] as number) + (values[n >> 1] as number)) / 2;
+      out[base + c] = (plane[base + c] as number) - median + level;
     }
-    return out;
-  });
-  return { ...map, planes: planes as [Float32Array, Float32Array, Float32Array] };
+  }
+  return { ...map, planes: [out, map.planes[1], map.planes[2]] };
 }
 
 /** Period of transverse marks, columns; null when the face shows none. */

@@ -12,6 +12,8 @@ export const FLAT_CUT_MEAN_SLOPE =
   (3 * (Math.sin(FACE_HALF_WIDTH) - FACE_HALF_WIDTH * Math.cos(FACE_HALF_WIDTH))) / FACE_HALF_WIDTH ** 3;
 
 const POINTS = 121;
+/** Points of a quick fit, for comparing readings of a photo. */
+export const QUICK_POINTS = 61;
 /** Roughness no photo resolves, radii: keeps a perfectly drawn line from looking infinitely certain. */
 const FLOOR = 0.004;
 
@@ -240,10 +242,15 @@ function bestDivision(
  * @param independentLimit upper bound on the number of independent points (the number of points set by hand)
  * @returns null when the trace is too short to have a direction
  */
-export function fitTrace(trace: readonly SurfacePoint[], bow: CameraBow, independentLimit = 200): TraceFit | null {
+export function fitTrace(
+  trace: readonly SurfacePoint[],
+  bow: CameraBow,
+  independentLimit = 200,
+  count = POINTS,
+): TraceFit | null {
   const length = polylineLength(trace);
   if (trace.length < 2 || !(length > 0.15)) return null;
-  const points = resamplePolyline(trace, POINTS);
+  const points = resamplePolyline(trace, count);
   const { division, independent } = bestDivision(points, independentLimit);
   const whole = bestPieces(points, 1, 3)?.[0];
   if (whole === undefined) return null;

