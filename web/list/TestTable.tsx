@@ -15,7 +15,7 @@ import { sectionText } from './sectionText.ts';
 export function TestTable({ tests }: { readonly tests: readonly TestRow[] }) {
   return (
     // biome-ignore lint/a11y/noNoninteractiveTabindex: a table wider than the page is scrolled by keyboard
-    <div className="table-scroll" tabIndex={0} role="group" aria-label={LIST.title}>
+    <section className="table-scroll" tabIndex={0} aria-label={LIST.title}>
       <table className="test-table">
         <thead>
           <tr>
@@ -43,7 +43,7 @@ export function TestTable({ tests }: { readonly tests: readonly TestRow[] }) {
           ))}
         </tbody>
       </table>
-    </div>
+    </section>
   );
 }
 

@@ -51,7 +51,7 @@ function Refusals({ result, dryRun }: { readonly result: LogImport; readonly dry
         )}
       </p>
       {/* biome-ignore lint/a11y/noNoninteractiveTabindex: a table wider than the page is scrolled by keyboard */}
-      <div className="table-scroll" tabIndex={0} role="group" aria-label={IMPORT.refused}>
+      <section className="table-scroll" tabIndex={0} aria-label={IMPORT.refused}>
         <table>
           <thead>
             <tr>
@@ -76,7 +76,7 @@ function Refusals({ result, dryRun }: { readonly result: LogImport; readonly dry
             ))}
           </tbody>
         </table>
-      </div>
+      </section>
     </div>
   );
 }

@@ -28,7 +28,7 @@ export function ReadingsPanel({ readings, governingId, onChanged }: ReadingsPane
         <p className="waiting">{READINGS.none}</p>
       ) : (
         // biome-ignore lint/a11y/noNoninteractiveTabindex: a table wider than its panel is scrolled by keyboard
-        <div className="table-scroll" tabIndex={0} role="group" aria-labelledby="readings-title">
+        <section className="table-scroll" tabIndex={0} aria-labelledby="readings-title">
           <table>
             <thead>
               <tr>
@@ -53,7 +53,7 @@ export function ReadingsPanel({ readings, governingId, onChanged }: ReadingsPane
               ))}
             </tbody>
           </table>
-        </div>
+        </section>
       )}
       {asked !== null && (
         <SetAsideForm
