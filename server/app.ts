@@ -9,6 +9,7 @@ import { refuseForeigners } from './http/loopback.ts';
 import { servePage } from './http/page.ts';
 import { parseOrRefuse } from './http/requestInvalid.ts';
 import { classifyRoutes } from './routes/classify.ts';
+import { exportRoutes } from './routes/exports.ts';
 import { laboratoryRoutes } from './routes/laboratory.ts';
 import { logRoutes } from './routes/logs.ts';
 import { measuringRoutes } from './routes/measuring.ts';
@@ -93,6 +94,7 @@ export async function buildApp(service: Service, logger?: FastifyBaseLogger): Pr
   classifyRoutes(app);
   logRoutes(app, service);
   measuringRoutes(app, service);
+  exportRoutes(app, service);
   await app.ready();
   return app;
 }

@@ -104,13 +104,13 @@ const measuredPhotos = async (): Promise<string[]> =>
   (await store.readingsOf(testId)).map((one) => one.photoSha256 ?? '');
 
 describe('the measuring queue', () => {
-  test('measures every photo once, with several lanes, in the order they came', async () => {
+  test('measures every photo once, with several lanes', async () => {
     const photos: string[] = [];
     for (let i = 0; i < 20; i++) photos.push(await addPhoto(`photo ${i}`));
     measuring = startRunner(4);
     await Promise.all(photos.map((sha256) => measuring.settled(testId, sha256)));
     expect(await measuring.progress()).toMatchObject({ waiting: 0, running: 0, done: 20 });
-    expect(pool.asked).toEqual(photos);
+    expect([...pool.asked].sort()).toEqual([...photos].sort());
     expect((await measuredPhotos()).sort()).toEqual([...photos].sort());
   });
 

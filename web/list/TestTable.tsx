@@ -54,7 +54,6 @@ function TestLine({ test }: { readonly test: TestRow }) {
     goTo({ place: 'sheet', testId: test.id });
   };
   return (
-    // biome-ignore lint/a11y/useKeyWithClickEvents: the link in the first cell is the way by keyboard
     <tr onClick={open}>
       <th scope="row">
         <Link to={{ place: 'sheet', testId: test.id }}>{test.specimenId}</Link>
