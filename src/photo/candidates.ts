@@ -24,6 +24,8 @@ export interface Candidate {
   readonly toX: number;
   readonly trace: PairTrace | null;
   readonly pairValue: number;
+  /** True when a wider candidate is crossed wholly by the same gap: this one is a part of a specimen. */
+  readonly isPart: boolean;
   /** How far its score as a specimen is behind the best one's of the photo. */
   readonly behindBest: number;
 }
@@ -59,7 +61,9 @@ export function findCandidates(picture: Picture, levels: Levels = levelsOf(pictu
     const whole = widened(start, candidates, levels, best);
     if (!candidates.includes(whole)) candidates.push(whole);
   }
-  return candidates.sort((a, b) => b.pairValue - a.pairValue);
+  return candidates
+    .map((c) => ({ ...c, isPart: candidates.some((d) => d !== c && contains(d.frame, c.frame) && crossedAlike(d, c)) }))
+    .sort((a, b) => b.pairValue - a.pairValue);
 }
 
 /** The picture reduced by a whole factor, made once. */
@@ -95,6 +99,7 @@ function candidateOf(levels: Levels, hypothesis: SpecimenHypothesis, bestScore: 
   const trace = found === null ? null : compareTrace(small, frame, found);
   return {
     behindBest: Math.max(0, bestScore - hypothesis.score),
+    isPart: false,
     hypothesis,
     frame: scaleFrame(frame, factor),
     refined,

@@ -54,6 +54,7 @@ export function readAsPair(candidate: Candidate): PhotoReading | null {
   const features = {
     ...specimenFeatures(candidate),
     gap: clipped(gap, 0, 3),
+    isPart: candidate.isPart ? 1 : 0,
     missingEnd: trace.missingEnd,
     missingShare: trace.missingShare,
     gapUnlike: Math.log(trace.gapUnlike + 3),
@@ -92,6 +93,7 @@ export function readAsHalf(half: HalfCandidate, end: EndOfHalf): PhotoReading | 
     sawn: square(fit),
     otherCut: other === undefined || other.cutByPhoto ? 1 : 0,
     otherSawn: other?.rim == null ? 0 : square(otherFit) * Math.min(1, other.rim.clearShare),
+    isPart: half.candidate.isPart ? 1 : 0,
     gap: trace === null ? 0 : clipped(-Math.log(trace.costPerRow), 0, 3),
     sides:
       trace === null || trace.gapUnlike === 0

@@ -124,6 +124,7 @@ const BEFORE: Weights = Object.fromEntries(
     ['pair.missingEnd', -3],
     ['pair.sides', 1],
     ['pair.unique', 0.5],
+    ['pair.isPart', -2],
     ['half.clear', 2],
     ['half.rim', 0.5],
     ['half.sawn', -2],
