@@ -17,6 +17,7 @@ const ENTRIES = {
   main: 'server/main.ts',
   measureWorker: 'src/photo/node/measureWorker.ts',
   uprightWorker: 'server/photos/uprightWorker.ts',
+  copyDatabaseWorker: 'server/backup/copyDatabaseWorker.ts',
 };
 
 async function filesIn(folder) {

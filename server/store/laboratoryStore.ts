@@ -1,4 +1,5 @@
 import { rm } from 'node:fs/promises';
+import { setImmediate as nextTurn } from 'node:timers/promises';
 import type Database from 'better-sqlite3';
 import type { Kysely } from 'kysely';
 import { LabError } from '../../src/errors.ts';
@@ -47,7 +48,7 @@ type Db = Kysely<StoreSchema>;
 interface OpenedStore {
   readonly folder: DataFolder;
   readonly db: Db;
-  /** The SQLite connection below `db`, for its online backup. */
+  /** The SQLite connection below `db`. */
   readonly raw: Database.Database;
   readonly clock: () => number;
 }
@@ -85,14 +86,12 @@ const sameIdentity = (input: TestInput): LabError =>
 export class LaboratoryStore implements LaboratoryRecords {
   readonly folder: DataFolder;
   readonly #db: Db;
-  readonly #raw: Database.Database;
   readonly #clock: () => number;
   readonly #bulkInsert: BulkInsert;
 
   constructor({ folder, db, raw, clock }: OpenedStore) {
     this.folder = folder;
     this.#db = db;
-    this.#raw = raw;
     this.#clock = clock;
     this.#bulkInsert = sqliteBulkInsert(raw);
   }
@@ -185,6 +184,8 @@ export class LaboratoryStore implements LaboratoryRecords {
     } catch (error) {
       if (error !== triedOut) throw error;
     }
+    // SQLite answers without waiting for anything: without a pause, batch after batch would let nobody else have a turn.
+    await nextTurn();
     return kept;
   }
 
@@ -509,11 +510,6 @@ export class LaboratoryStore implements LaboratoryRecords {
       .values({ name, value })
       .onConflict((c) => c.column('name').doUpdateSet({ value }))
       .execute();
-  }
-
-  /** Writes a consistent copy of the database while the store goes on working. */
-  async copyDatabase(to: string): Promise<void> {
-    await this.#raw.backup(to);
   }
 
   async close(): Promise<void> {

@@ -54,7 +54,7 @@ export interface RunningLaboratory {
 
 async function answerOf(response: Response): Promise<Answer> {
   const text = await response.text();
-  const isJson = /json/.test(response.headers.get('content-type') ?? '');
+  const isJson = /[/+]json(?:;|$)/.test(response.headers.get('content-type') ?? '');
   return {
     status: response.status,
     headers: response.headers,
