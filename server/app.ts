@@ -15,6 +15,7 @@ import { logRoutes } from './routes/logs.ts';
 import { measuringRoutes } from './routes/measuring.ts';
 import { photoRoutes } from './routes/photos.ts';
 import { readingRoutes } from './routes/readings.ts';
+import { reportRoutes } from './routes/reports.ts';
 import type { TypedApp } from './routes/route.ts';
 import { testRoutes } from './routes/tests.ts';
 import type { Service } from './service.ts';
@@ -95,6 +96,7 @@ export async function buildApp(service: Service, logger?: FastifyBaseLogger): Pr
   logRoutes(app, service);
   measuringRoutes(app, service);
   exportRoutes(app, service);
+  reportRoutes(app, service);
   await app.ready();
   return app;
 }

@@ -59,6 +59,7 @@ export async function serve(options: Serve): Promise<RunningService> {
     pool,
     measuring,
     upright,
+    report: null,
     limits: DEFAULT_LIMITS,
     programDir: options.programDir,
     version: options.version,

@@ -6,7 +6,7 @@ import { buildApp } from '../../server/app.ts';
 import { startMeasuring } from '../../server/measure/measuringRunner.ts';
 import { createUprightPhotos } from '../../server/photos/uprightPhotos.ts';
 import type { TypedApp } from '../../server/routes/route.ts';
-import { DEFAULT_LIMITS, type Service, type ServiceLimits } from '../../server/service.ts';
+import { DEFAULT_LIMITS, type ReportRenderer, type Service, type ServiceLimits } from '../../server/service.ts';
 import { openStore } from '../../server/store/openStore.ts';
 import type { MeasureJob, MeasurePool } from '../../src/photo/measurement.ts';
 import { measurePhoto } from '../../src/photo/node/measurePhoto.ts';
@@ -65,7 +65,12 @@ async function answerOf(response: Response): Promise<Answer> {
 
 /** Runs the service on a free port with a data folder of its own. */
 export async function runLaboratory(
-  options: { readonly pool?: MeasurePool; readonly limits?: Partial<ServiceLimits>; readonly lanes?: number } = {},
+  options: {
+    readonly pool?: MeasurePool;
+    readonly limits?: Partial<ServiceLimits>;
+    readonly lanes?: number;
+    readonly report?: ReportRenderer;
+  } = {},
 ): Promise<RunningLaboratory> {
   const dataDir = await mkdtemp(join(tmpdir(), 'breakplane-test-'));
   const store = await openStore(dataDir);
@@ -78,6 +83,7 @@ export async function runLaboratory(
     pool,
     measuring,
     upright,
+    report: options.report ?? null,
     limits: { ...DEFAULT_LIMITS, ...options.limits },
     programDir: PROGRAM_DIR,
     version: '0.0.0-test',
