@@ -5,7 +5,9 @@ export interface NamedPhoto {
   readonly innerPath: string;
 }
 
-export type PhotoMatch = { readonly found: PhotoFile } | { readonly found: null; readonly why: 'none' | 'several' };
+export type PhotoMatch<P extends NamedPhoto> =
+  | { readonly found: P }
+  | { readonly found: null; readonly why: 'none' | 'several' };
 
 const lastPart = (path: string): string => path.split('/').at(-1) ?? path;
 const stem = (name: string): string => name.replace(/\.[a-z0-9]{2,5}$/i, '');
