@@ -1,6 +1,7 @@
 import { Command, CommanderError } from 'commander';
 import { LabError } from '../errors.ts';
 import { classifyCommand } from './commands/classify.ts';
+import { importCommand } from './commands/import.ts';
 import { measureCommand } from './commands/measure.ts';
 import { serveCommand } from './commands/serve.ts';
 import type { CommandContext } from './context.ts';
@@ -8,7 +9,7 @@ import { EXIT } from './exitStatus.ts';
 import { openOutput, showsColours } from './output.ts';
 import type { CliPorts } from './ports.ts';
 
-const COMMANDS = [measureCommand, classifyCommand, serveCommand];
+const COMMANDS = [measureCommand, classifyCommand, importCommand, serveCommand];
 
 function buildProgram(context: CommandContext): Command {
   const { ports } = context;
