@@ -1,5 +1,9 @@
-import { type Kysely, type Migration, Migrator } from 'kysely';
+import { type Kysely, type Migration, Migrator, SqliteAdapter, sql } from 'kysely';
 import type { StoreSchema } from './schema.ts';
+
+/** Whether the database is SQLite, which has a text index of its own. */
+export const isSqlite = (db: Kysely<never> | Kysely<unknown> | Kysely<StoreSchema>): boolean =>
+  db.getExecutor().adapter instanceof SqliteAdapter;
 
 /** Only the builder is used, so that the same steps run on SQLite and PostgreSQL. Steps are never changed, only added. */
 const MIGRATIONS: Readonly<Record<string, Migration>> = {
@@ -129,7 +133,50 @@ const MIGRATIONS: Readonly<Record<string, Migration>> = {
         .execute();
     },
   },
+  '0002-find': {
+    async up(db) {
+      await db.schema.dropIndex('tests_by_text').execute();
+      // With what lists are often narrowed by, so that passing over tests that do not fit needs only the index.
+      await db.schema.dropIndex('tests_by_date').execute();
+      await db.schema
+        .createIndex('tests_by_date')
+        .on('tests')
+        .columns(['sort_date', 'id', 'plane_angle_deg', 'flag_count'])
+        .execute();
+      await db.schema.createIndex('tests_by_flags').on('tests').columns(['flag_count']).execute();
+      await db.schema.createIndex('tests_by_angle').on('tests').columns(['plane_angle_deg']).execute();
+      await db.schema
+        .createIndex('tests_by_operator')
+        .on('tests')
+        .columns(['operator_key', 'sort_date', 'id'])
+        .execute();
+      await createTextIndex(db);
+    },
+  },
 };
+
+/**
+ * Substring search over all tests. SQLite keeps the pieces of three letters of every text in an index of its own (FTS5,
+ * tokenizer "trigram"), which triggers keep in step; it names tests by their rowid, so that the file must never be
+ * vacuumed. Elsewhere the search compares the text itself.
+ */
+async function createTextIndex(db: Kysely<unknown>): Promise<void> {
+  if (!isSqlite(db)) return;
+  for (const statement of [
+    `create virtual table tests_text using fts5(search_text, content='tests', content_rowid='rowid', tokenize='trigram')`,
+    `insert into tests_text(tests_text) values ('rebuild')`,
+    `create trigger tests_text_added after insert on tests begin
+       insert into tests_text(rowid, search_text) values (new.rowid, new.search_text);
+     end`,
+    `create trigger tests_text_changed after update of search_text on tests
+     when old.search_text is not new.search_text begin
+       insert into tests_text(tests_text, rowid, search_text) values ('delete', old.rowid, old.search_text);
+       insert into tests_text(rowid, search_text) values (new.rowid, new.search_text);
+     end`,
+  ]) {
+    await sql.raw(statement).execute(db);
+  }
+}
 
 /** Brings a database to the newest form. @throws the error of the step that failed; that step left nothing behind */
 export async function migrateToLatest(db: Kysely<StoreSchema>): Promise<void> {
