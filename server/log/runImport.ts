@@ -2,9 +2,8 @@ import { createWriteStream, type WriteStream } from 'node:fs';
 import { rename, rm } from 'node:fs/promises';
 import { join } from 'node:path';
 import { finished } from 'node:stream/promises';
-import { LabError } from '../../src/errors.ts';
 import type { ImportSummary } from '../../src/log/importSummary.ts';
-import type { ImportLog } from '../../src/log/node/importLog.ts';
+import { type ImportLog, importLog } from '../../src/log/node/importLog.ts';
 import type { LogSource } from '../../src/log/node/logSource.ts';
 import type { PhotoSource } from '../../src/log/node/photoSource.ts';
 import type { LogDeclarations } from '../../src/log/node/planImport.ts';
@@ -52,11 +51,6 @@ function refusedRowsWriter(path: string) {
 /** Imports a log as the command line does; photos are kept at once and measured in the background. */
 export async function runImport(service: Service, request: ImportRequest): Promise<ImportAnswer> {
   const { store, measuring } = service;
-  const log: { importLog?: (work: ImportLog) => Promise<ImportSummary> } = await import(
-    '../../src/log/node/importLog.ts'
-  );
-  const { importLog } = log;
-  if (!importLog) throw new LabError('busy', 'test logs cannot be imported by this version');
   const id = orderedId();
   const startedAt = new Date().toISOString();
   const pending = join(store.folder.incoming, `${id}-refused.csv`);
