@@ -2,6 +2,7 @@ import { availableParallelism, totalmem } from 'node:os';
 import pino from 'pino';
 import type { RunningService, ServeOptions } from '../src/cli/ports.ts';
 import { LabError } from '../src/errors.ts';
+import { renderReport } from '../src/report/node/render.ts';
 import { buildApp } from './app.ts';
 import { requireLoopback } from './http/loopback.ts';
 import { createMeasurePool, poolSize } from './measure/measurePool.ts';
@@ -59,7 +60,8 @@ export async function serve(options: Serve): Promise<RunningService> {
     pool,
     measuring,
     upright,
-    report: null,
+    report: (sheet, photoPath) =>
+      renderReport({ tests: [sheet], format: 'pdf', version: options.version, madeAt: new Date(), photoPath }),
     limits: DEFAULT_LIMITS,
     programDir: options.programDir,
     version: options.version,

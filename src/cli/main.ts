@@ -3,13 +3,14 @@ import { LabError } from '../errors.ts';
 import { classifyCommand } from './commands/classify.ts';
 import { importCommand } from './commands/import.ts';
 import { measureCommand } from './commands/measure.ts';
+import { reportCommand } from './commands/report.ts';
 import { serveCommand } from './commands/serve.ts';
 import type { CommandContext } from './context.ts';
 import { EXIT } from './exitStatus.ts';
 import { openOutput, showsColours } from './output.ts';
 import type { CliPorts } from './ports.ts';
 
-const COMMANDS = [measureCommand, classifyCommand, importCommand, serveCommand];
+const COMMANDS = [measureCommand, classifyCommand, importCommand, reportCommand, serveCommand];
 
 function buildProgram(context: CommandContext): Command {
   const { ports } = context;

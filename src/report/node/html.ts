@@ -42,5 +42,5 @@ export function htmlOf(tests: readonly PrintedTest[], madeAt: Date): string {
     }${list('Cautions', s.cautions)}</article>`;
   });
   const first = tests[0]?.summary;
-  return `<!doctype html><html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width"><title>${escapeXml(first?.title ?? "Failure mode")}</title><style>${STYLE}</style></head><body>${articles.join('')}<p class="small">${escapeXml(first?.program ?? '')}, made ${madeAt.toISOString()}</p></body></html>\n`;
+  return `<!doctype html><html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width"><title>${escapeXml(first?.title ?? 'Failure mode')}</title><style>${STYLE}</style></head><body>${articles.join('')}<p class="small">${escapeXml(first?.program ?? '')}, made ${madeAt.toISOString()}</p></body></html>\n`;
 }

@@ -28,7 +28,7 @@ export const fontFolder = (): string =>
  */
 const TEMPLATE = `
 #let report = json("data.json")
-#set document(title: report.title, author: report.program, date: none)
+#set document(title: report.title, author: report.program, date: datetime(..report.date))
 #set page(
   paper: report.paper,
   margin: (x: 16mm, top: 14mm, bottom: 16mm),
@@ -126,6 +126,16 @@ const TEMPLATE = `
 }
 `;
 
+/** The moment as Typst's datetime takes it, UTC. */
+const dateParts = (moment: Date) => ({
+  year: moment.getUTCFullYear(),
+  month: moment.getUTCMonth() + 1,
+  day: moment.getUTCDate(),
+  hour: moment.getUTCHours(),
+  minute: moment.getUTCMinutes(),
+  second: moment.getUTCSeconds(),
+});
+
 /** One page a test (more when a remark is long). PDF/A-2b, tagged, figures as vectors, text extractable. */
 export function pdfOf(tests: readonly PrintedTest[], options: PdfOptions): Uint8Array {
   const compiler = NodeCompiler.create({ workspace: WORKSPACE, fontArgs: [{ fontPaths: [fontFolder()] }] });
@@ -142,6 +152,7 @@ export function pdfOf(tests: readonly PrintedTest[], options: PdfOptions): Uint8
     title: tests.length === 1 ? (tests[0]?.summary.title ?? 'Failure modes') : `Failure modes of ${tests.length} tests`,
     program: tests[0]?.summary.program ?? 'Breakplane',
     paper: options.paper,
+    date: dateParts(options.madeAt),
     madeAt: options.madeAt.toISOString().slice(0, 16).replace('T', ' '),
     laboratory: options.laboratory,
     tests: entries,
