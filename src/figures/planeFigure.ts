@@ -86,8 +86,11 @@ export function planeFigure(
 
   const statement = assessment.statement;
   const cells: readonly CellProbability[] = statement?.cells ?? [];
+  // The tilt of a flat break has no sign: its cells stand on both sides.
+  const bothSides = statement?.comparedQuantity === 'planeTilt';
   cells.forEach((cell, i) => {
-    for (const [from, to] of stretches(cell.fromDeg, cell.toDeg)) {
+    const own = stretches(cell.fromDeg, cell.toDeg);
+    for (const [from, to] of bothSides ? [...own, ...own.map(([a, b]): [number, number] => [-b, -a])] : own) {
       parts.push(
         element('rect', {
           x: x(from),

@@ -31,17 +31,17 @@ const TEMPLATE = `
 #set document(title: report.title, author: report.program, date: datetime(..report.date))
 #set page(
   paper: report.paper,
-  margin: (x: 16mm, top: 14mm, bottom: 16mm),
+  margin: (x: 16mm, top: 12mm, bottom: 14mm),
   footer: context [
     #set text(7.5pt, fill: rgb("#4b5b6b"))
     #grid(columns: (1fr, auto), [#report.program #sym.dot.c made #report.madeAt #sym.dot.c a proposal until accepted by an authorised person], [#counter(page).display("1 / 1", both: true)])
   ],
 )
-#set text(font: "DejaVu Sans", size: 8.4pt, lang: "en", hyphenate: true)
+#set text(font: "DejaVu Sans", size: 8pt, lang: "en", hyphenate: true)
 #set par(leading: 0.5em, spacing: 0.65em, justify: false)
-#set table(stroke: none, inset: (x: 3pt, y: 2.1pt))
+#set table(stroke: none, inset: (x: 3pt, y: 1.8pt))
 #show heading.where(level: 1): it => block(below: 3pt, text(14pt, weight: "bold", it.body))
-#show heading.where(level: 2): it => block(above: 8pt, below: 3pt, text(9.4pt, weight: "bold", fill: rgb("#1d3a5f"), it.body))
+#show heading.where(level: 2): it => block(above: 7pt, below: 2.5pt, text(9.2pt, weight: "bold", fill: rgb("#1d3a5f"), it.body))
 
 #let facts(rows) = table(
   columns: (auto, 1fr),
@@ -108,7 +108,7 @@ const TEMPLATE = `
     heading(level: 2)[Uncertainty of the plane angle (standard uncertainties, GUM)]
     set text(7.2pt)
     table(
-      columns: (auto, auto, auto, 1fr), align: (left, right, center, left), inset: (x: 3pt, y: 1.2pt),
+      columns: (auto, auto, auto, 1fr), align: (left, right, center, left), inset: (x: 3pt, y: 0.9pt),
       table.header(muted[component], muted[u], muted[type], muted[how it was found]),
       ..t.budget.map(b => (b.component, b.u, b.evaluation, b.explanation)).flatten(),
     )
