@@ -23,6 +23,14 @@ function portsOf(programDir: string): CliPorts {
       const { openStore } = await import('./store/openStore.ts');
       return openStore(dataDir);
     },
+    async backup(dataDir, archive) {
+      const { writeBackup } = await import('./backup/writeBackup.ts');
+      return writeBackup(dataDir, archive, version);
+    },
+    async restore(archive, dataDir) {
+      const { restoreBackup } = await import('./backup/restoreBackup.ts');
+      return restoreBackup(archive, dataDir);
+    },
     async serve(options) {
       const { serve } = await import('./serve.ts');
       return serve({ ...options, programDir, version });

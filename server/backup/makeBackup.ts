@@ -69,7 +69,11 @@ async function partsOf(folder: DataFolder, databaseCopy: string): Promise<Part[]
  * refused rows. The database is copied as of one moment while the store goes on working; photos are never changed or
  * taken away, so that those the copy names are all there.
  */
-export async function* makeBackup(store: LaboratoryStore, programVersion: string): AsyncGenerator<Uint8Array> {
+export async function* makeBackup(
+  store: LaboratoryStore,
+  programVersion: string,
+  onFile: (file: BackupManifest['files'][number]) => void = () => {},
+): AsyncGenerator<Uint8Array> {
   const databaseCopy = join(store.folder.incoming, `backup-${randomUUID()}.sqlite`);
   const nowMs = Date.now();
   try {
@@ -83,7 +87,8 @@ export async function* makeBackup(store: LaboratoryStore, programVersion: string
     };
     const text = Buffer.from(JSON.stringify(manifest, null, 1));
     yield Buffer.concat([tarHeader({ path: MANIFEST, bytes: text.length }, nowMs), text, tarPadding(text.length)]);
-    for (const { path, source, bytes } of parts) {
+    for (const { path, source, bytes, sha256 } of parts) {
+      onFile({ path, bytes, sha256 });
       yield tarHeader({ path, bytes }, nowMs);
       let seen = 0;
       for await (const chunk of createReadStream(source, { highWaterMark: 256 * 1024 })) {

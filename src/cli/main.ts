@@ -1,5 +1,6 @@
 import { Command, CommanderError } from 'commander';
 import { LabError } from '../errors.ts';
+import { backupCommand, restoreCommand } from './commands/backup.ts';
 import { classifyCommand } from './commands/classify.ts';
 import { importCommand } from './commands/import.ts';
 import { measureCommand } from './commands/measure.ts';
@@ -10,7 +11,15 @@ import { EXIT } from './exitStatus.ts';
 import { openOutput, showsColours } from './output.ts';
 import type { CliPorts } from './ports.ts';
 
-const COMMANDS = [measureCommand, classifyCommand, importCommand, reportCommand, serveCommand];
+const COMMANDS = [
+  measureCommand,
+  classifyCommand,
+  importCommand,
+  reportCommand,
+  serveCommand,
+  backupCommand,
+  restoreCommand,
+];
 
 function buildProgram(context: CommandContext): Command {
   const { ports } = context;

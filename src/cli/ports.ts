@@ -24,6 +24,12 @@ export interface RunningService {
   readonly empty?: boolean;
 }
 
+/** What a backup holds. */
+export interface ArchivedLaboratory {
+  readonly files: number;
+  readonly bytes: number;
+}
+
 /** What the executable passes to the commands: everything in `src/cli` that is not the domain comes through here. */
 export interface CliPorts {
   readonly stdout: TextOutput;
@@ -36,6 +42,10 @@ export interface CliPorts {
   createMeasurePool(options: { readonly size?: number }): MeasurePool;
   /** Starts the service and resolves when it listens. @throws LabError `not-loopback` */
   serve(options: ServeOptions): Promise<RunningService>;
+  /** Writes everything a data folder holds into one archive with checksums. @throws LabError `busy`, `already-exists` */
+  backup?(dataDir: string, archive: string): Promise<ArchivedLaboratory>;
+  /** Restores such an archive into an empty data folder, whole or not at all. @throws LabError `invalid-request`, `already-exists` */
+  restore?(archive: string, dataDir: string): Promise<ArchivedLaboratory>;
   /** Folder of the program, where `samples/` lies; for the hint to the demo laboratory. */
   readonly programDir?: string;
 }

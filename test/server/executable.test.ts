@@ -58,6 +58,34 @@ describe('the executable', () => {
     }
   });
 
+  test('imports a log, backs it up, restores it elsewhere; refuses to write over anything', () => {
+    const log = join(PROGRAM_DIR, 'samples', 'logs', 'demo.csv');
+    const imported = run(['import', log, '--data', 'lab', '--json']);
+    expect(imported.status, imported.stderr).toBe(0);
+    expect(JSON.parse(imported.stdout)).toMatchObject({ refused: 0, updated: 0, unchanged: 0, photosQueued: 0 });
+    const again = JSON.parse(run(['import', log, '--data', 'lab', '--json']).stdout);
+    expect(again).toMatchObject({ stored: 0, updated: 0, unchanged: again.rows });
+    expect(run(['backup', 'lab.tar', '--data', 'lab'])).toMatchObject({ status: 0 });
+    expect(run(['restore', 'lab.tar', '--data', 'lab2'])).toMatchObject({
+      status: 0,
+      stdout: expect.stringContaining('all checksums right'),
+    });
+    expect(JSON.parse(run(['import', log, '--data', 'lab2', '--json']).stdout)).toMatchObject({
+      stored: 0,
+      unchanged: again.rows,
+    });
+    for (const args of [
+      ['backup', 'lab.tar', '--data', 'lab'],
+      ['restore', 'lab.tar', '--data', 'lab2'],
+      ['backup', 'other.tar', '--data', 'nowhere'],
+      ['restore', 'notes.jpg', '--data', 'lab3'],
+    ]) {
+      const { status, stderr } = run(args);
+      expect(status, args.join(' ')).toBe(2);
+      expect(stderr).not.toMatch(/\n\s+at /);
+    }
+  });
+
   test('says its version', () => {
     expect(run(['--version'])).toMatchObject({ status: 0, stdout: expect.stringMatching(/^\d+\.\d+\.\d+\n$/) });
   });
