@@ -1,7 +1,8 @@
-import { createRequire } from 'node:module';
-import { dirname, join } from 'node:path';
+import { join } from 'node:path';
 import { NodeCompiler } from '@myriaddreamin/typst-ts-node-compiler';
 import type { TestSummary } from '../summary.ts';
+import { fontFolder } from './fonts.ts';
+import { printableValue } from './printable.ts';
 
 /** A summary with the printed photo beside it. */
 export interface PrintedTest {
@@ -17,10 +18,6 @@ export interface PdfOptions {
 }
 
 const WORKSPACE = '/report';
-
-/** Folder of the embedded fonts: documents never rely on the fonts of a machine. */
-export const fontFolder = (): string =>
-  join(dirname(createRequire(import.meta.url).resolve('dejavu-fonts-ttf/package.json')), 'ttf');
 
 /**
  * The template reads everything as data; what users wrote is text there and can never become markup.
@@ -157,7 +154,7 @@ export function pdfOf(tests: readonly PrintedTest[], options: PdfOptions): Uint8
     laboratory: options.laboratory,
     tests: entries,
   };
-  compiler.mapShadow(file('data.json'), Buffer.from(JSON.stringify(data)));
+  compiler.mapShadow(file('data.json'), Buffer.from(JSON.stringify(printableValue(data))));
   compiler.mapShadow(file('main.typ'), Buffer.from(TEMPLATE));
   const compiled = compiler.compile({ mainFilePath: file('main.typ') });
   if (compiled.result === null) {
