@@ -1,8 +1,9 @@
+/// <reference path="./fontkit.d.ts" />
 import { join } from 'node:path';
 import { openSync } from 'fontkit';
 import { fontFolder } from './fonts.ts';
 
-let regular: { hasGlyphForCodePoint(codePoint: number): boolean } | null = null;
+let regular: ReturnType<typeof openSync> | null = null;
 
 /** Characters that layout treats specially and that no font draws. */
 const INVISIBLE = /[\p{Zs}\n\t\u200b-\u200f\u202a-\u202e\u2066-\u2069]/u;
