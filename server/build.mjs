@@ -5,7 +5,7 @@
  */
 import { createHash } from 'node:crypto';
 import { existsSync } from 'node:fs';
-import { mkdir, readdir, readFile, rename, rm, writeFile } from 'node:fs/promises';
+import { lstat, mkdir, readdir, readFile, rename, rm, symlink, writeFile } from 'node:fs/promises';
 import { basename, dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 
@@ -75,9 +75,24 @@ async function buildProgram(outdir) {
   await replaceFiles(join(PROGRAM_DIR, outdir), outputFiles);
 }
 
+/**
+ * Puts the executable where `npx breakplane` looks first. npm links the executables of dependencies only, and without
+ * this npx goes through a cache of its own that several calls at once can spoil.
+ */
+async function linkExecutable() {
+  const bin = join(PROGRAM_DIR, 'node_modules', '.bin');
+  const link = join(bin, 'breakplane');
+  if (process.platform === 'win32' || !existsSync(bin)) return;
+  if (await lstat(link).catch(() => null)) return;
+  await symlink(join('..', '..', 'server', 'breakplane.mjs'), link).catch((error) => {
+    if (error.code !== 'EEXIST') throw error;
+  });
+}
+
 async function buildPage() {
   const { build } = await import('vite');
-  await build({ configFile: 'vite.config.ts', logLevel: 'warn' });
+  // The page is one file on purpose: it comes from this machine, and everything on it is needed at once.
+  await build({ configFile: 'vite.config.ts', logLevel: 'warn', build: { chunkSizeWarningLimit: 2000 } });
 }
 
 async function part(what, outdir, sources, run) {
@@ -110,3 +125,4 @@ const SHARED = ['src/', 'package-lock.json'];
 await part('program', 'dist/server', ['server/', ...SHARED], buildProgram);
 if (existsSync('web/index.html') && !process.argv.includes('--program'))
   await part('page', 'dist/web', ['web/', 'vite.config.ts', ...SHARED], buildPage);
+await linkExecutable();
