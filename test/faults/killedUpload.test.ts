@@ -1,74 +1,20 @@
-import { type ChildProcess, spawn, spawnSync } from 'node:child_process';
 import { createHash } from 'node:crypto';
-import { once } from 'node:events';
-import { mkdtemp, readFile, rm } from 'node:fs/promises';
+import { readFile } from 'node:fs/promises';
 import { request } from 'node:http';
-import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { setTimeout as pause } from 'node:timers/promises';
-import sharp from 'sharp';
 import { afterAll, beforeAll, expect, test } from 'vitest';
-import { filesBelow, PROGRAM_DIR, testInput } from '../server/runningLaboratory.ts';
+import { filesBelow, testInput } from '../server/runningLaboratory.ts';
+import { ask, type KillableService, killableService, noisePhoto } from './killableService.ts';
 import { randomFrom } from './randomFrom.ts';
 
 const REPEATS = 20;
-let dataDir: string;
-let running: ChildProcess | null = null;
+let service: KillableService;
 
 beforeAll(async () => {
-  const built = spawnSync(process.execPath, ['server/build.mjs', '--program'], { cwd: PROGRAM_DIR, encoding: 'utf8' });
-  expect(built.status, built.stderr).toBe(0);
-  dataDir = await mkdtemp(join(tmpdir(), 'breakplane-killed-'));
+  service = await killableService();
 });
-afterAll(async () => {
-  running?.kill('SIGKILL');
-  await rm(dataDir, { recursive: true, force: true });
-});
-
-/** Starts the service as a laboratory does; resolves with its address. */
-async function start(): Promise<string> {
-  const child = spawn(process.execPath, ['server/breakplane.mjs', 'serve', '--port', '0', '--data', dataDir], {
-    cwd: PROGRAM_DIR,
-    stdio: ['ignore', 'pipe', 'pipe'],
-  });
-  running = child;
-  let said = '';
-  for (const stream of [child.stdout, child.stderr]) stream.on('data', (text: Buffer) => (said += text.toString()));
-  for (let i = 0; i < 600; i++) {
-    const address = /http:\/\/127\.0\.0\.1:\d+/.exec(said)?.[0];
-    if (address) return address;
-    if (child.exitCode !== null) break;
-    await pause(50);
-  }
-  throw new Error(`the service did not start: ${said}`);
-}
-
-async function kill(): Promise<void> {
-  if (!running) return;
-  const ended = once(running, 'exit');
-  running.kill('SIGKILL');
-  await ended;
-  running = null;
-}
-
-const ask = async (address: string, path: string, json?: unknown) => {
-  const response = await fetch(`${address}/api/v1${path}`, {
-    ...(json === undefined
-      ? {}
-      : { method: 'POST', headers: { 'content-type': 'application/json' }, body: JSON.stringify(json) }),
-  });
-  return response.json();
-};
-
-/** A photo that is measured at once (it is too small) but is large on the wire. */
-async function noisePhoto(seed: number): Promise<Buffer> {
-  const random = randomFrom(seed);
-  const pixels = Buffer.from(Array.from({ length: 60 * 60 * 3 }, () => Math.floor(256 * random())));
-  const photo = await sharp(pixels, { raw: { width: 60, height: 60, channels: 3 } })
-    .png({ compressionLevel: 0 })
-    .toBuffer();
-  return Buffer.concat([photo, Buffer.alloc(200_000, seed)]);
-}
+afterAll(() => service.remove());
 
 /** Sends a share of an upload, then kills the service after `waitMs`; with `share` 1 and `waitMs` null after its answer. */
 async function uploadAndKill(
@@ -102,7 +48,7 @@ async function uploadAndKill(
   if (share === 1) call.end();
   if (waitMs === null) await answered;
   else await pause(waitMs);
-  await kill();
+  await service.kill();
   await answered;
   call.destroy();
 }
@@ -115,14 +61,14 @@ async function expectNothingHalf(address: string, testId: string): Promise<numbe
     await pause(50);
   }
   const { photos, readings } = await ask(address, `/tests/${testId}`);
-  const onDisk = await filesBelow(join(dataDir, 'photos'));
+  const onDisk = await filesBelow(join(service.dataDir, 'photos'));
   const named = photos.map(({ sha256 }: { sha256: string }) => join(sha256.slice(0, 2), sha256.slice(2, 4), sha256));
   expect(onDisk).toEqual([...named].sort());
   for (const file of onDisk) {
-    const bytes = await readFile(join(dataDir, 'photos', file));
+    const bytes = await readFile(join(service.dataDir, 'photos', file));
     expect(createHash('sha256').update(bytes).digest('hex')).toBe(file.split('/').at(-1));
   }
-  expect(await filesBelow(join(dataDir, 'incoming'))).toEqual([]);
+  expect(await filesBelow(join(service.dataDir, 'incoming'))).toEqual([]);
   const measured = readings.map(({ photoSha256 }: { photoSha256: string }) => photoSha256).sort();
   expect(measured).toEqual(photos.map(({ sha256 }: { sha256: string }) => sha256).sort());
   return photos.length;
@@ -130,11 +76,11 @@ async function expectNothingHalf(address: string, testId: string): Promise<numbe
 
 test(`killed ${REPEATS} times in the middle of an upload: no half record, no orphan file, every kept photo measured once`, async () => {
   const random = randomFrom(20260302);
-  let address = await start();
+  let address = await service.start();
   const { id } = await ask(address, '/tests', testInput());
   let kept = 0;
   for (let i = 0; i < REPEATS; i++) {
-    const photo = await noisePhoto(i + 1);
+    const photo = await noisePhoto(i + 1, 200_000);
     const [share, waitMs] = [
       [random(), 5 * random()],
       [1, 2 * random()],
@@ -142,7 +88,7 @@ test(`killed ${REPEATS} times in the middle of an upload: no half record, no orp
       [1, null],
     ][i % 4] as [number, number | null];
     await uploadAndKill(address, id, photo, share, waitMs);
-    address = await start();
+    address = await service.start();
     const count = await expectNothingHalf(address, id);
     // What was answered is kept; what was cut off is not.
     if (i % 4 === 3) expect(count).toBe(kept + 1);
