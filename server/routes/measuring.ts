@@ -1,3 +1,4 @@
+import type { ServerResponse } from 'node:http';
 import { z } from 'zod';
 import { ENGINE_VERSION } from '../../src/photo/measurement.ts';
 import { MeasuringAnswer } from '../http/schemas.ts';
@@ -17,6 +18,12 @@ export function measuringRoutes(app: TypedApp, { store, measuring }: Service): v
     { schema: { ...TAG, summary: 'How far the measuring of photos is', response: { 200: MeasuringAnswer } } },
     () => measuring.progress(),
   );
+
+  const listening = new Set<ServerResponse>();
+  // A page that listens must not keep the service from stopping.
+  app.addHook('preClose', async () => {
+    for (const response of listening) response.end();
+  });
 
   app.get(
     '/api/v1/measuring/events',
@@ -47,7 +54,9 @@ export function measuringRoutes(app: TypedApp, { store, measuring }: Service): v
       };
       const stopListening = measuring.onChange(soon);
       const still = setInterval(() => raw.write(': still here\n\n'), STILL_HERE_MS);
+      listening.add(raw);
       raw.on('close', () => {
+        listening.delete(raw);
         stopListening();
         clearInterval(still);
         if (due) clearTimeout(due);

@@ -31,7 +31,10 @@ export async function addPhotoRecord(
   let same = db.selectFrom('photos').selectAll().where('sha256', '=', photo.sha256);
   same = photo.testId === null ? same.where('test_id', 'is', null) : same.where('test_id', '=', photo.testId);
   const known = await same.executeTakeFirst();
-  if (known) return photoOf(known);
+  if (known) {
+    if (photo.testId !== null) await hasten(db, photo.testId, photo.sha256, priority);
+    return photoOf(known);
+  }
   const row = {
     id: orderedId(nowMs),
     sha256: photo.sha256,
@@ -51,6 +54,20 @@ export async function addPhotoRecord(
   return photoOf(row);
 }
 
+/** Lets a measurement that is due come sooner, when somebody waits for it now. @returns whether one is due */
+async function hasten(db: Db, testId: string, sha256: string, priority: number): Promise<boolean> {
+  const due = await db
+    .selectFrom('measuring')
+    .select(['id', 'priority'])
+    .where('test_id', '=', testId)
+    .where('photo_sha256', '=', sha256)
+    .where('state', 'in', ['waiting', 'running'])
+    .executeTakeFirst();
+  if (!due) return false;
+  if (due.priority > priority) await db.updateTable('measuring').set({ priority }).where('id', '=', due.id).execute();
+  return true;
+}
+
 /** Makes the measurement of a photo due, unless it is already. */
 export async function queueMeasurement(
   db: Db,
@@ -59,14 +76,7 @@ export async function queueMeasurement(
   nowMs: number,
   priority: number,
 ): Promise<void> {
-  const due = await db
-    .selectFrom('measuring')
-    .select('id')
-    .where('test_id', '=', testId)
-    .where('photo_sha256', '=', sha256)
-    .where('state', 'in', ['waiting', 'running'])
-    .executeTakeFirst();
-  if (due) return;
+  if (await hasten(db, testId, sha256, priority)) return;
   await db
     .insertInto('measuring')
     .values({

@@ -137,6 +137,17 @@ describe('the measuring queue', () => {
     expect(await measuring.progress()).toMatchObject({ waiting: 0, done: 2, paused: false });
   });
 
+  test('paused, a photo of an import is measured once somebody asks for it', async () => {
+    measuring.pause();
+    const sha256 = await addPhoto('photo of an import');
+    await store.queueMeasurement(testId, sha256, 'now');
+    await measuring.settled(testId, sha256);
+    const again = await addPhoto('second photo');
+    await addPhoto('second photo', 'now');
+    await measuring.settled(testId, again);
+    expect(await measuring.progress()).toMatchObject({ waiting: 0, done: 2, paused: true });
+  });
+
   test('cancelled, what waits is taken out, what runs is finished, the photos stay', async () => {
     pool.hold();
     for (let i = 0; i < 4; i++) await addPhoto(`photo ${i}`);
@@ -230,6 +241,8 @@ describe('over HTTP', () => {
       expect(await laboratory.ask('POST', '/api/v1/measuring/resume')).toMatchObject({ body: { paused: false } });
       expect(await nextEvent()).toMatchObject({ paused: false });
       stop.abort();
+      // This one goes on listening while the service stops.
+      await fetch(`${laboratory.address}/api/v1/measuring/events`);
       expect(await laboratory.ask('POST', '/api/v1/measuring/cancel')).toMatchObject({ body: { changed: 0 } });
       expect(await laboratory.ask('POST', '/api/v1/measuring/again')).toMatchObject({ body: { changed: 0 } });
     } finally {
