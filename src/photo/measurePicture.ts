@@ -20,6 +20,8 @@ export interface PictureOptions {
   /** Focal length over the long side of the photo, where the photo states it. */
   readonly focalOverLongSide?: number | null;
   /** Told what was decided and on what figures, for `--debug`. */
+  /** Least probability of being right with which a reading is given, 0 to 1. */
+  readonly leastAcceptance?: number;
   readonly onNote?: (topic: string, figures: unknown) => void;
 }
 
@@ -84,7 +86,8 @@ export function measurePicture(picture: Picture, options: PictureOptions): Pictu
   const where = placeOf(picture, best.candidate.frame, best.candidate);
   const poor = tooPoor(quality);
   if (poor !== null) return { ...refusal(poor.code, poor.message), ...where, quality: { ...quality } };
-  if (accepted < LEAST_ACCEPTANCE) return { ...whyNot(readings, best), ...where, quality: { ...quality } };
+  if (accepted < (options.leastAcceptance ?? LEAST_ACCEPTANCE))
+    return { ...whyNot(readings, best), ...where, quality: { ...quality } };
   const result = measureReading(picture, best, options);
   if (result === null) {
     return {

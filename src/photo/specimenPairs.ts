@@ -138,8 +138,8 @@ type Colour = Float64Array;
 const lightnessStep = (a: Colour, b: Colour) => ((a[0] as number) - (b[0] as number)) / 12;
 function hueStep(a: Colour, b: Colour): number {
   // Chroma in proportion to lightness does not change when light is taken away.
-  const la = Math.max(20, a[0] as number);
-  const lb = Math.max(20, b[0] as number);
+  const la = Math.max(8, a[0] as number);
+  const lb = Math.max(8, b[0] as number);
   const scale = Math.min(la, lb) / 6;
   return (
     scale * Math.hypot((a[1] as number) / la - (b[1] as number) / lb, (a[2] as number) / la - (b[2] as number) / lb)
@@ -242,11 +242,13 @@ function scorePair(
       const likeGround = hueStep(strip, ground);
       const other = meanBand(grid, line, -side * Math.max(1, 0.05 * w), -side * 0.3 * w, cells);
       const differs = other === null ? 0 : fullStep(strip, other);
-      if (darker && likeGround < 0.5 && differs > 0.8)
+      if (darker && likeGround < 0.8 && differs > 0.8)
         // The side of the bar turned from the light is dark too, but passes into the lit side softly.
         shadow = Math.max(
           shadow,
-          Math.min(1, differs / 2) * (1 - likeGround) * Math.max(0.3, Math.min(1, (inner.sharpness - 0.3) / 0.12)),
+          Math.min(1, differs / 2) *
+            Math.min(1, 1.25 * (1 - likeGround)) *
+            Math.max(0.3, Math.min(1, (inner.sharpness - 0.3) / 0.12)),
         );
     }
   }

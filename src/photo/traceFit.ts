@@ -157,6 +157,9 @@ function fitSteep(points: readonly SurfacePoint[], independentLimit: number): Si
   };
 }
 
+/** How much better several pieces must be than one shape to be believed (BIC difference; Kass and Raftery 1995: above 6 strong, above 10 very strong). */
+const PIECES_MARGIN = 10;
+
 const STEEP_DEG = 67.5;
 const FLAT_DEG = 22.5;
 
@@ -198,6 +201,26 @@ function refinePiece(
 type PieceKind = 'flat' | 'inclined' | 'steep';
 const kindOf = (deg: number): PieceKind =>
   Math.abs(deg) > STEEP_DEG ? 'steep' : Math.abs(deg) < FLAT_DEG ? 'flat' : 'inclined';
+
+/** Neighbouring pieces of one kind and hand are one segment with a bend: roughness, not a second segment. */
+function mergeAlike(points: readonly SurfacePoint[], pieces: readonly StraightPiece[]): StraightPiece[] {
+  const merged: StraightPiece[] = [];
+  for (const piece of pieces) {
+    const last = merged[merged.length - 1];
+    const kind = kindOf(piece.planeAngleDeg);
+    const alike =
+      last !== undefined &&
+      kindOf(last.planeAngleDeg) === kind &&
+      (kind !== 'inclined' || Math.sign(last.planeAngleDeg) === Math.sign(piece.planeAngleDeg));
+    if (!alike) {
+      merged.push(piece);
+      continue;
+    }
+    const whole = bestPieces(points.slice(last.from, piece.to + 1), 1, 3)?.[0];
+    if (whole !== undefined) merged[merged.length - 1] = { ...whole, from: last.from, to: piece.to };
+  }
+  return merged;
+}
 
 interface Division {
   readonly pieces: readonly StraightPiece[];
@@ -273,9 +296,14 @@ export function fitTrace(
   const bestSingle = scored[0];
   if (bestSingle === undefined) return null;
 
-  if (division !== null && division.score < bestSingle.score - 2) {
-    const piecewise = describePieces(points, division.pieces, independentLimit);
-    if (piecewise !== null) return piecewise;
+  if (division !== null && division.score < bestSingle.score - PIECES_MARGIN) {
+    const pieces = mergeAlike(points, division.pieces);
+    const sse = pieces.reduce((sum, p) => sum + p.sse, 0);
+    const merged = criterion(sse, points.length, independent, 3 * pieces.length - 1);
+    if (pieces.length > 1 && merged < bestSingle.score - PIECES_MARGIN) {
+      const piecewise = describePieces(points, pieces, independentLimit);
+      if (piecewise !== null) return piecewise;
+    }
   }
   return describeSingle(points, face, scored, bow, independentLimit);
 }
