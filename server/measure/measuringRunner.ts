@@ -78,8 +78,8 @@ export function startMeasuring({ store, pool, lanes, clock = Date.now, onFault }
     const result = await measure(due);
     const fault = result.outcome === 'not-measured' && result.reason.code === 'fault' ? result.reason.message : null;
     if (fault !== null && stopping) return;
-    if (fault !== null && due.tries < MOST_TRIES) return store.returnMeasurement(due, fault);
-    await store.keepMeasurement(
+    if (fault !== null && due.tries < MOST_TRIES) return store.measuring.giveBack(due, fault);
+    await store.measuring.keep(
       due,
       {
         testId: due.testId,
@@ -103,7 +103,7 @@ export function startMeasuring({ store, pool, lanes, clock = Date.now, onFault }
   const lane = async (): Promise<void> => {
     while (!stopping) {
       const seen = calls;
-      const due = await store.takeMeasurement(paused ? 'now' : 'later');
+      const due = await store.measuring.take(paused ? 'now' : 'later');
       if (!due) {
         if (seen === calls) return;
         continue;
@@ -150,12 +150,12 @@ export function startMeasuring({ store, pool, lanes, clock = Date.now, onFault }
         const key = keyOf(testId, sha256);
         waiters.set(key, [...(waiters.get(key) ?? []), resolve]);
       });
-      if (!(await store.isMeasurementDue(testId, sha256))) settle(testId, sha256);
+      if (!(await store.measuring.isDue(testId, sha256))) settle(testId, sha256);
       wake();
       return done;
     },
     async progress() {
-      const counts = await store.measuringCounts();
+      const counts = await store.measuring.counts();
       const rate = photosPerMinute();
       return {
         waiting: counts.waiting,
@@ -178,10 +178,10 @@ export function startMeasuring({ store, pool, lanes, clock = Date.now, onFault }
       changed();
     },
     async cancel() {
-      const count = await store.cancelMeasuring();
+      const count = await store.measuring.cancel();
       for (const key of [...waiters.keys()]) {
         const [testId = '', sha256 = ''] = key.split('/');
-        if (!(await store.isMeasurementDue(testId, sha256))) settle(testId, sha256);
+        if (!(await store.measuring.isDue(testId, sha256))) settle(testId, sha256);
       }
       changed();
       return count;
@@ -194,7 +194,7 @@ export function startMeasuring({ store, pool, lanes, clock = Date.now, onFault }
       stopping = true;
       for (const key of [...waiters.keys()]) {
         const [testId = '', sha256 = ''] = key.split('/');
-        if (!(await store.isMeasurementDue(testId, sha256))) settle(testId, sha256);
+        if (!(await store.measuring.isDue(testId, sha256))) settle(testId, sha256);
       }
       await Promise.allSettled([...lanesRunning]);
     },

@@ -20,7 +20,7 @@ export function laboratoryRoutes(app: TypedApp, service: Service): void {
       },
     },
     async () => {
-      await store.setting('health');
+      await store.ping();
       return { status: 'ok' as const, version };
     },
   );

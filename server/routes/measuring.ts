@@ -86,7 +86,7 @@ export function measuringRoutes(app: TypedApp, { store, measuring }: Service): v
         if (action === 'resume') measuring.resume();
         if (action === 'cancel') changed = await measuring.cancel();
         if (action === 'again') {
-          changed = await store.queueOlderThan(ENGINE_VERSION);
+          changed = await store.measuring.addOlderThan(ENGINE_VERSION);
           measuring.wake();
         }
         return { ...(await measuring.progress()), changed };

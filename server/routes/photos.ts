@@ -75,7 +75,7 @@ export function photoRoutes(app: TypedApp, { store, measuring, upright, limits }
     async (request, reply) => {
       const { id, sha256 } = request.params;
       await store.readTest(id);
-      await store.queueMeasurement(id, sha256, 'now');
+      await store.measuring.add(id, sha256, 'now');
       await measuring.settled(id, sha256);
       return reply.code(201).send(await sheetWithoutTest(store, id));
     },

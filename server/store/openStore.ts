@@ -37,7 +37,7 @@ export async function openStore(
     await migrateToLatest(opened.db);
     const store = new LaboratoryStore({ folder, db: opened.db, raw: opened.raw, clock: options.clock ?? Date.now });
     await recoverIncoming(folder, (sha256) => store.hasPhoto(sha256));
-    await store.resumeMeasuring();
+    await store.measuring.resume();
     await store.renewStandings();
     return store;
   } catch (error) {

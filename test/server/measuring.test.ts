@@ -6,8 +6,9 @@ import { setTimeout as pause } from 'node:timers/promises';
 import { afterEach, beforeEach, describe, expect, test } from 'vitest';
 import { MeasuringAnswer } from '../../server/http/schemas.ts';
 import { type MeasuringRunner, startMeasuring } from '../../server/measure/measuringRunner.ts';
-import type { LaboratoryStore, Urgency } from '../../server/store/laboratoryStore.ts';
+import type { LaboratoryStore } from '../../server/store/laboratoryStore.ts';
 import { MOST_TRIES } from '../../server/store/measuringQueue.ts';
+import type { Urgency } from '../../server/store/measuringWork.ts';
 import { openStore } from '../../server/store/openStore.ts';
 import { ENGINE_VERSION, type MeasureJob, type MeasurePool } from '../../src/photo/measurement.ts';
 import type { PhotoMeasurement } from '../../src/records/reading.ts';
@@ -140,7 +141,7 @@ describe('the measuring queue', () => {
   test('paused, a photo of an import is measured once somebody asks for it', async () => {
     measuring.pause();
     const sha256 = await addPhoto('photo of an import');
-    await store.queueMeasurement(testId, sha256, 'now');
+    await store.measuring.add(testId, sha256, 'now');
     await measuring.settled(testId, sha256);
     const again = await addPhoto('second photo');
     await addPhoto('second photo', 'now');
@@ -155,7 +156,7 @@ describe('the measuring queue', () => {
     await until(async () => pool.asked.length === 1);
     expect(await measuring.cancel()).toBe(3);
     pool.release();
-    await until(async () => (await store.measuringCounts()).done === 1);
+    await until(async () => (await store.measuring.counts()).done === 1);
     expect(await measuring.progress()).toMatchObject({ waiting: 0, running: 0, done: 1, cancelled: 3 });
     expect(await store.photosOf(testId)).toHaveLength(4);
   });
@@ -175,13 +176,13 @@ describe('the measuring queue', () => {
   test('what a crash interrupted is due again; a photo that ends the program every time is set aside', async () => {
     const poisonous = await addPhoto('poison');
     for (let i = 1; i <= MOST_TRIES; i++) {
-      expect(await store.takeMeasurement()).toMatchObject({ photoSha256: poisonous, tries: i });
+      expect(await store.measuring.take()).toMatchObject({ photoSha256: poisonous, tries: i });
       // As if the program had been killed here and started again.
       await store.close();
       store = await openStore(dataDir);
     }
-    expect(await store.takeMeasurement()).toBeNull();
-    expect(await store.measuringCounts()).toMatchObject({ waiting: 0, running: 0, 'set-aside': 1 });
+    expect(await store.measuring.take()).toBeNull();
+    expect(await store.measuring.counts()).toMatchObject({ waiting: 0, running: 0, 'set-aside': 1 });
     const [reading] = await store.readingsOf(testId);
     expect(reading?.result).toMatchObject({ outcome: 'not-measured', reason: { code: 'fault' } });
     expect((await store.readRow(testId)).flags.map(({ code }) => code)).toEqual(['photo-not-measured']);
@@ -189,7 +190,7 @@ describe('the measuring queue', () => {
 
   test('a measurement that was ended meanwhile is not kept a second time', async () => {
     const sha256 = await addPhoto('photo');
-    const due = await store.takeMeasurement();
+    const due = await store.measuring.take();
     if (!due) throw new Error('there must be one');
     const result = await pool.measure({ path: sha256 });
     const reading = {
@@ -203,16 +204,16 @@ describe('the measuring queue', () => {
       setAside: false,
       result,
     } as const;
-    expect(await store.keepMeasurement(due, reading)).not.toBeNull();
-    expect(await store.keepMeasurement(due, reading)).toBeNull();
+    expect(await store.measuring.keep(due, reading)).not.toBeNull();
+    expect(await store.measuring.keep(due, reading)).toBeNull();
     expect(await store.readingsOf(testId)).toHaveLength(1);
   });
 
   test('with a newer engine all photos are measured again, and the old readings stay', async () => {
     const sha256 = await addPhoto('photo');
     await measuring.settled(testId, sha256);
-    expect(await store.queueOlderThan(ENGINE_VERSION)).toBe(0);
-    expect(await store.queueOlderThan('a later engine')).toBe(1);
+    expect(await store.measuring.addOlderThan(ENGINE_VERSION)).toBe(0);
+    expect(await store.measuring.addOlderThan('a later engine')).toBe(1);
     await measuring.settled(testId, sha256);
     expect((await store.readingsOf(testId)).map(({ setAside }) => setAside)).toEqual([true, false]);
   });
