@@ -19,6 +19,7 @@ import type { DataFolder } from './dataFolder.ts';
 import { identityOf, testOf } from './documents.ts';
 import { type HistoryEntry, historyOfTest } from './history.ts';
 import { type ImportRecord, keepImport, readImport } from './importRecords.ts';
+import { indexTexts } from './indexTexts.ts';
 import { keepReading, markReading, renewStanding } from './keepReading.ts';
 import { listTestRows, rowOf, type TestFilter, type TestPage, type TestRow } from './listTests.ts';
 import { keepLogEntries } from './logEntries.ts';
@@ -259,6 +260,11 @@ export class LaboratoryStore implements LaboratoryRecords {
       renewed += count;
       if (count < batch) return renewed;
     }
+  }
+
+  /** Puts the texts of some new tests into the text index. @returns how many; 0 when all are in it */
+  indexTexts(most = 500): Promise<number> {
+    return this.#change((db) => indexTexts(db, most));
   }
 
   /** Answers when the store can be read. */

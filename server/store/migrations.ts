@@ -5,6 +5,9 @@ import type { StoreSchema } from './schema.ts';
 export const isSqlite = (db: Kysely<never> | Kysely<unknown> | Kysely<StoreSchema>): boolean =>
   db.getExecutor().adapter instanceof SqliteAdapter;
 
+/** Setting: the rowid up to which texts are in the text index. */
+export const INDEXED_TO = 'text-indexed-to';
+
 /** Only the builder is used, so that the same steps run on SQLite and PostgreSQL. Steps are never changed, only added. */
 const MIGRATIONS: Readonly<Record<string, Migration>> = {
   '0001-laboratory': {
@@ -153,11 +156,14 @@ const MIGRATIONS: Readonly<Record<string, Migration>> = {
       await createTextIndex(db);
     },
   },
+  '0003-index-texts-later': {
+    up: indexTextsLater,
+  },
 };
 
 /**
  * Substring search over all tests. SQLite keeps the pieces of three letters of every text in an index of its own (FTS5,
- * tokenizer "trigram"), which triggers keep in step; it names tests by their rowid, so that the file must never be
+ * tokenizer "trigram"), kept in step with the tests; it names tests by their rowid, so that the file must never be
  * vacuumed. Elsewhere the search compares the text itself.
  */
 async function createTextIndex(db: Kysely<unknown>): Promise<void> {
@@ -170,6 +176,28 @@ async function createTextIndex(db: Kysely<unknown>): Promise<void> {
      end`,
     `create trigger tests_text_changed after update of search_text on tests
      when old.search_text is not new.search_text begin
+       insert into tests_text(tests_text, rowid, search_text) values ('delete', old.rowid, old.search_text);
+       insert into tests_text(rowid, search_text) values (new.rowid, new.search_text);
+     end`,
+  ]) {
+    await sql.raw(statement).execute(db);
+  }
+}
+
+/**
+ * The pieces of a text cost more than all else that is written of a test, so that they are made later, some hundred tests
+ * at a time (`indexTexts`). The setting says up to which rowid they are made; texts behind it are compared themselves.
+ */
+async function indexTextsLater(db: Kysely<unknown>): Promise<void> {
+  if (!isSqlite(db)) return;
+  for (const statement of [
+    'drop trigger tests_text_added',
+    'drop trigger tests_text_changed',
+    `insert into settings(name, value) select '${INDEXED_TO}', coalesce(max(rowid), 0) from tests`,
+    `create trigger tests_text_changed after update of search_text on tests
+     when old.search_text is not new.search_text
+       and old.rowid <= (select cast(value as integer) from settings where name = '${INDEXED_TO}')
+     begin
        insert into tests_text(tests_text, rowid, search_text) values ('delete', old.rowid, old.search_text);
        insert into tests_text(rowid, search_text) values (new.rowid, new.search_text);
      end`,
