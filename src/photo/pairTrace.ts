@@ -32,6 +32,8 @@ export interface PairTrace {
   readonly secondCostPerRow: number;
   /** How the trace runs on beyond the lower and the upper edge, see {@link continuationCost}. */
   readonly beyondCosts: readonly [number, number];
+  /** Mean cost of a step of the path, along or across. */
+  readonly costPerStep: number;
   /** Mean cost a row; 0.03 for a clear gap, near 1 for none. */
   readonly costPerRow: number;
   /** Share of the rows in which the path crosses nothing like a gap. */
@@ -60,8 +62,22 @@ export function searchPairTrace(picture: Picture, frame: SpecimenFrame, search: 
   const blocked = search.near === undefined ? undefined : bandAround(map, search.near.points, search.near.reachRadii);
   const path = cheapestPath(costs, blocked);
   if (path === null) return null;
-  return describe(map, evidence, costs, path);
+  const found = describe(map, evidence, costs, path);
+  if (found.missingEnd <= SHORT_OF_EDGE) return found;
+  // A trace reaches both edges. When the cheapest path does not, the break may run along the specimen first (a split).
+  const freely = cheapestPath({ ...costs, along: costs.along.map((cost) => FREE_RUN * cost) }, blocked);
+  if (freely === null) return found;
+  const other = describe(map, evidence, costs, freely);
+  const reaches = other.missingEnd < 0.4 * found.missingEnd && other.missingShare < found.missingShare;
+  return reaches && other.costPerStep < CLEAR_STEP ? { ...other, costPerRow: found.costPerRow } : found;
 }
+
+/** Share of rows without a gap at one end from which on the trace is looked for along the specimen too. */
+const SHORT_OF_EDGE = 0.08;
+/** How much less a run along the specimen then costs. */
+const FREE_RUN = 0.15;
+/** Such a run must be seen: mean cost a step. */
+const CLEAR_STEP = 0.3;
 
 /** Adds what only the comparison of candidates needs: the next best path and the continuation beyond the edges. */
 export function compareTrace(picture: Picture, frame: SpecimenFrame, trace: PairTrace): PairTrace {
@@ -114,6 +130,7 @@ function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, pat
   const n = path.rows.length;
   const points: SurfacePoint[] = [];
   const perRow = new Float64Array(map.rows);
+  let stepSum = 0;
   const counts = new Float64Array(map.rows);
   const depths = new Float64Array(map.rows);
   const aside = Math.max(3, Math.round(0.15 / map.stepRadii));
@@ -123,7 +140,9 @@ function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, pat
     points.push({ x: map.firstX + c * map.stepRadii, phi: map.firstPhi + r * map.stepRadii });
     const at = r * map.columns + c;
     const inRow = i > 0 && path.rows[i - 1] === r;
-    perRow[r] = (perRow[r] as number) + ((inRow ? costs.along[at] : costs.across[at]) as number);
+    const step = (inRow ? costs.along[at] : costs.across[at]) as number;
+    stepSum += step;
+    perRow[r] = (perRow[r] as number) + step;
     counts[r] = (counts[r] as number) + 1;
     const left = Math.max(0, c - aside);
     const right = Math.min(map.columns - 1, c + aside);
@@ -160,6 +179,7 @@ function describe(map: UnrolledMap, evidence: GapEvidence, costs: StepCosts, pat
     beyondCosts: [1, 1],
     rowCosts: smoothed,
     rowDepths: depths,
+    costPerStep: stepSum / n,
     costPerRow: path.cost / map.rows,
     missingShare: missing / map.rows,
     missingEnd: Math.max(low, high) / map.rows,
