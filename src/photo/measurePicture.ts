@@ -5,12 +5,14 @@ import { COVERAGE_FACTOR } from './byHand.ts';
 import { type Candidate, findCandidates, findHalves, levelsOf } from './candidates.ts';
 import { centreOfGap } from './centreOfGap.ts';
 import { acceptance, type PhotoReading, readAsHalf, readAsPair } from './choice.ts';
-import { searchPairTrace } from './pairTrace.ts';
+import { type PairTrace, SEARCHED_HALF_WIDTH, searchPairTrace } from './pairTrace.ts';
 import type { Picture } from './picture.ts';
 import { LEAST_PX_ACROSS, type PhotoQuality, qualityOf, WANTED_PX_ACROSS } from './quality.ts';
 import { refineFrame } from './refineFrame.ts';
 import { refineRim } from './rimTrace.ts';
+import { evidenceStage, faceStage, type StagePicture, specimenStage } from './stages.ts';
 import { type PhotoPoint, type SpecimenFrame, type SurfacePoint, toPhoto } from './unroll.ts';
+import { unrollFace } from './unrolledMap.ts';
 
 export type NotMeasuredCode = (typeof NOT_MEASURED_CODES)[number];
 
@@ -22,6 +24,8 @@ export interface PictureOptions {
   /** Told what was decided and on what figures, for `--debug`. */
   /** Least probability of being right with which a reading is given, 0 to 1. */
   readonly leastAcceptance?: number;
+  /** Receives the stages of the measurement as pictures. */
+  readonly onStage?: (name: string, stage: StagePicture) => void;
   readonly onNote?: (topic: string, figures: unknown) => void;
 }
 
@@ -182,6 +186,7 @@ function measureReading(picture: Picture, reading: PhotoReading, options: Pictur
   const parallel: SpecimenFrame = { ...frame, cameraDistanceRadii: Number.POSITIVE_INFINITY };
   const inPicture = (list: readonly SurfacePoint[]) => list.map((p) => toPhoto(parallel, p));
   let points = reading.points;
+  let fineMap: PairTrace | null = null;
   let lipsPx: readonly [PhotoPoint[], PhotoPoint[]] | undefined;
   if (reading.view === 'pair') {
     const xs = reading.points.map((p) => p.x);
@@ -193,6 +198,7 @@ function measureReading(picture: Picture, reading: PhotoReading, options: Pictur
       near: { points: reading.points, reachRadii: GAP_BAND },
     });
     if (fine !== null) {
+      fineMap = fine;
       const centred = centreOfGap(fine.map, fine.points, CENTRE_REACH);
       points = centred.points;
       lipsPx = [inPicture(centred.lips[0]), inPicture(centred.lips[1])];
@@ -208,6 +214,25 @@ function measureReading(picture: Picture, reading: PhotoReading, options: Pictur
     cameraTiltStandardUncertaintyDeg: options.cameraTiltStandardUncertaintyDeg,
     pointUncertaintyPx: Math.max(0.5, 0.5 * stepRadii * frame.radiusPx),
   });
+  if (options.onStage !== undefined) {
+    options.onStage('1-specimen', specimenStage(picture, parallel, reading.candidate, points));
+    const curve = measured?.fit.curve ?? [];
+    if (fineMap !== null) {
+      options.onStage('2-gap-evidence', evidenceStage(fineMap.map, fineMap.evidence, fineMap.points));
+      options.onStage('3-unrolled-face', faceStage(fineMap.map, points, curve));
+    } else {
+      const xs = points.map((p) => p.x);
+      const face = unrollFace(
+        picture,
+        parallel,
+        Math.min(...xs) - 1,
+        Math.max(...xs) + 1,
+        stepRadii,
+        SEARCHED_HALF_WIDTH,
+      );
+      options.onStage('3-unrolled-face', faceStage(face, points, curve));
+    }
+  }
   return measured === null ? null : { reading, frame, points, measured };
 }
 

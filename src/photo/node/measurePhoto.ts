@@ -1,8 +1,10 @@
 import { createHash } from 'node:crypto';
+import sharp from 'sharp';
 import type { PhotoMeasurement } from '../../records/reading.ts';
 import { measureByHand } from '../byHand.ts';
 import type { MeasureOptions } from '../measurement.ts';
 import { measurePicture } from '../measurePicture.ts';
+import type { StagePicture } from '../stages.ts';
 import { openPhoto } from './decode.ts';
 
 /** Long side of the picture the measurement works on, px. */
@@ -67,9 +69,17 @@ export async function measurePhoto(bytes: Uint8Array, options: MeasureOptions = 
       warnings: [],
     };
   }
+  const stages: { name: string; stage: StagePicture }[] = [];
   const result = measurePicture(picture, {
+    ...(options.onStage !== undefined && {
+      onStage: (name: string, stage: StagePicture) => stages.push({ name, stage }),
+    }),
     cameraTiltStandardUncertaintyDeg: tilt,
     focalOverLongSide: photo.focalOverLongSide,
   });
+  for (const { name, stage } of stages) {
+    const raw = { width: stage.widthPx, height: stage.heightPx, channels: 3 } as const;
+    options.onStage?.(name, await sharp(stage.rgb, { raw }).png().toBuffer());
+  }
   return { ...result, ...size, elapsedMs: elapsed() };
 }
