@@ -10,7 +10,6 @@ import { startMeasuring } from './measure/measuringRunner.ts';
 import { createUprightPhotos } from './photos/uprightPhotos.ts';
 import { DEFAULT_LIMITS, type Service } from './service.ts';
 import { openStore } from './store/openStore.ts';
-import { startTextIndexing } from './store/textIndexing.ts';
 
 interface Serve extends ServeOptions {
   readonly programDir: string;
@@ -51,9 +50,7 @@ export async function serve(options: Serve): Promise<RunningService> {
     lanes,
     onFault: (error) => logger.error({ err: error }, 'measuring failed'),
   });
-  const stopIndexing = startTextIndexing(store, (error) => logger.error({ err: error }, 'indexing texts failed'));
   const closeParts = async (): Promise<void> => {
-    await stopIndexing();
     await measuring.stop();
     await Promise.all([pool.close(), upright.close()]);
     await store.close();

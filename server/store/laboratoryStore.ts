@@ -94,6 +94,7 @@ export class LaboratoryStore implements LaboratoryRecords {
       if (await this.#identityTaken(db, input, null)) throw sameIdentity(input);
       const row = newTestRow(input, this.#clock(), note);
       await db.insertInto('tests').values(row).execute();
+      await indexTexts(db);
       return testOf(row);
     });
   }
@@ -260,11 +261,6 @@ export class LaboratoryStore implements LaboratoryRecords {
       renewed += count;
       if (count < batch) return renewed;
     }
-  }
-
-  /** Puts the texts of some new tests into the text index. @returns how many; 0 when all are in it */
-  indexTexts(most = 500): Promise<number> {
-    return this.#change((db) => indexTexts(db, most));
   }
 
   /** Answers when the store can be read. */

@@ -3,7 +3,7 @@ import { LabError } from '../../src/errors.ts';
 import type { ListQuery } from '../../src/records/laboratoryRecords.ts';
 import type { Test } from '../../src/records/test.ts';
 import { foldText, testOf } from './documents.ts';
-import { INDEXED_TO, isSqlite } from './migrations.ts';
+import { isSqlite } from './migrations.ts';
 import type { StoreSchema, TestRecord } from './schema.ts';
 import type { Standing } from './standing.ts';
 
@@ -63,14 +63,13 @@ const wordsOf = (text: string): string[] => foldText(text).split(/\s+/).filter(B
 
 /** Conditions of the text: by the text index where there is one and it is wanted, else by comparing. */
 function textConditions(e: Builder, words: readonly string[], indexed: boolean): Expression<SqlBool>[] {
-  const compare = (word: string) => sql<SqlBool>`${e.ref('search_text')} like ${`%${escapeLike(word)}%`} escape '\\'`;
   const inIndex = indexed ? words.filter((word) => [...word].length >= SHORTEST_INDEXED) : [];
-  const others = words.filter((word) => !inIndex.includes(word)).map(compare);
-  if (inIndex.length === 0) return others;
+  const compared = words
+    .filter((word) => !inIndex.includes(word))
+    .map((word) => sql<SqlBool>`${e.ref('search_text')} like ${`%${escapeLike(word)}%`} escape '\\'`);
+  if (inIndex.length === 0) return compared;
   const phrase = inIndex.map((word) => `"${word.replaceAll('"', '""')}"`).join(' AND ');
-  const found = sql<SqlBool>`tests.rowid in (select rowid from tests_text where tests_text match ${phrase})`;
-  const notIndexedYet = sql<SqlBool>`tests.rowid > (select cast(value as integer) from settings where name = ${INDEXED_TO})`;
-  return [e.or([found, e.and([notIndexedYet, ...inIndex.map(compare)])]), ...others];
+  return [sql<SqlBool>`tests.rowid in (select rowid from tests_text where tests_text match ${phrase})`, ...compared];
 }
 
 /**

@@ -5,6 +5,7 @@ import type { Reading } from '../../src/records/reading.ts';
 import type { TestInput } from '../../src/records/test.ts';
 import type { BulkInsert } from './bulkInsert.ts';
 import { fieldsOf, identityOf, readingOf, testOf } from './documents.ts';
+import { indexTexts } from './indexTexts.ts';
 import { readingRow, readingsOfTests } from './readings.ts';
 import type { ReadingTable, StoreSchema, TestRecord } from './schema.ts';
 import { standingColumns } from './standing.ts';
@@ -124,5 +125,6 @@ export async function keepLogEntries(
   const newTests = tests.filter((test) => test.isNew).map((test) => test.record);
   await bulkInsert(db, 'tests', newTests);
   await bulkInsert(db, 'readings', newReadings);
+  await indexTexts(db);
   return kept;
 }

@@ -11,7 +11,7 @@ import { LEAST_PX_ACROSS, type PhotoQuality, qualityOf, WANTED_PX_ACROSS } from 
 import { refineFrame } from './refineFrame.ts';
 import { refineRim } from './rimTrace.ts';
 import { evidenceStage, faceStage, type StagePicture, specimenStage } from './stages.ts';
-import { type PhotoPoint, type SpecimenFrame, type SurfacePoint, toPhoto } from './unroll.ts';
+import { type PhotoPoint, type SpecimenFrame, type SurfacePoint, toPhoto, toSurface } from './unroll.ts';
 import { unrollFace } from './unrolledMap.ts';
 
 export type NotMeasuredCode = (typeof NOT_MEASURED_CODES)[number];
@@ -216,7 +216,7 @@ function measureReading(picture: Picture, reading: PhotoReading, options: Pictur
   });
   if (options.onStage !== undefined) {
     options.onStage('1-specimen', specimenStage(picture, parallel, reading.candidate, points));
-    const curve = measured?.fit.curve ?? [];
+    const curve = (measured?.fit.curve ?? []).map((p) => toSurface(parallel, toPhoto(frame, p)));
     if (fineMap !== null) {
       options.onStage('2-gap-evidence', evidenceStage(fineMap.map, fineMap.evidence, fineMap.points));
       options.onStage('3-unrolled-face', faceStage(fineMap.map, points, curve));
