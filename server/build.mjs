@@ -45,11 +45,15 @@ async function stateOf(sources) {
 async function replaceFiles(outdir, files) {
   await mkdir(outdir, { recursive: true });
   for (const file of files) {
-    await writeFile(`${file.path}.new`, file.contents);
-    await rename(`${file.path}.new`, file.path);
+    const part = `${file.path}.${process.pid}.new`;
+    await writeFile(part, file.contents);
+    await rename(part, file.path);
   }
   const kept = new Set(files.map((file) => basename(file.path)));
-  for (const name of await readdir(outdir)) if (!kept.has(name)) await rm(join(outdir, name), { force: true });
+  for (const name of await readdir(outdir)) {
+    // What ends in .new is being written by another build at this moment.
+    if (!kept.has(name) && !name.endsWith('.new')) await rm(join(outdir, name), { force: true });
+  }
 }
 
 async function buildProgram(outdir) {
