@@ -61,6 +61,8 @@ export class LaboratoryStore implements LaboratoryRecords {
   /** The photos whose measurement is due. */
   readonly measuring: MeasuringWork;
   readonly #db: Db;
+  /** Photos whose files are on their way into place, by SHA-256. */
+  readonly #placing = new Map<string, Promise<unknown>>();
   readonly #clock: () => number;
   readonly #bulkInsert: BulkInsert;
 
@@ -198,6 +200,25 @@ export class LaboratoryStore implements LaboratoryRecords {
    * @throws LabError `contradiction` when the bytes do not belong to the SHA-256, `not-found` without the test
    */
   async addPhoto(photo: Omit<Photo, 'addedAt'>, temporaryPath: string, urgency: Urgency = 'later'): Promise<Photo> {
+    const placed = this.#keepPhoto(photo, temporaryPath, urgency);
+    // The record is written before its file is in place: whoever asks for the file meanwhile waits for it.
+    const settled = placed.then(
+      () => undefined,
+      () => undefined,
+    );
+    const earlier = this.#placing.get(photo.sha256);
+    const both = Promise.all([earlier, settled]);
+    this.#placing.set(photo.sha256, both);
+    try {
+      return await placed;
+    } finally {
+      void both.then(() => {
+        if (this.#placing.get(photo.sha256) === both) this.#placing.delete(photo.sha256);
+      });
+    }
+  }
+
+  async #keepPhoto(photo: Omit<Photo, 'addedAt'>, temporaryPath: string, urgency: Urgency): Promise<Photo> {
     const incoming = await takeIn(this.folder, photo.sha256, temporaryPath);
     try {
       const kept = await this.#change(async (db) => {
@@ -226,6 +247,7 @@ export class LaboratoryStore implements LaboratoryRecords {
 
   async photoPath(sha256: string): Promise<string> {
     await readPhoto(this.#db, sha256);
+    await this.#placing.get(sha256);
     return photoFilePath(this.folder, sha256);
   }
 
@@ -261,6 +283,20 @@ export class LaboratoryStore implements LaboratoryRecords {
       renewed += count;
       if (count < batch) return renewed;
     }
+  }
+
+  /** What the laboratory has settled under this name; null when it has not. */
+  async setting(name: string): Promise<string | null> {
+    const row = await this.#db.selectFrom('settings').select('value').where('name', '=', name).executeTakeFirst();
+    return row?.value ?? null;
+  }
+
+  async setSetting(name: string, value: string): Promise<void> {
+    await this.#db
+      .insertInto('settings')
+      .values({ name, value })
+      .onConflict((c) => c.column('name').doUpdateSet({ value }))
+      .execute();
   }
 
   /** Answers when the store can be read. */
