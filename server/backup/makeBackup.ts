@@ -2,7 +2,6 @@ import { randomUUID } from 'node:crypto';
 import { createReadStream } from 'node:fs';
 import { readdir, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
-import { setTimeout as pause } from 'node:timers/promises';
 import Database from 'better-sqlite3';
 import type { DataFolder } from '../store/dataFolder.ts';
 import type { LaboratoryStore } from '../store/laboratoryStore.ts';
@@ -10,9 +9,6 @@ import { photoFilePath, sha256OfFile } from '../store/photoFiles.ts';
 import { copyDatabase } from './copyDatabase.ts';
 import { type BackupManifest, DATABASE, MANIFEST } from './manifest.ts';
 import { tarEnd, tarHeader, tarPadding } from './tar.ts';
-
-/** A photo whose record was just written is at its place a moment later, ms. */
-const IN_PLACE_WITHIN_MS = 5000;
 
 /** A file of the backup and where its bytes are now. */
 interface Part {
@@ -22,17 +18,7 @@ interface Part {
   readonly sha256: string;
 }
 
-async function sizeOf(path: string): Promise<number> {
-  const until = Date.now() + IN_PLACE_WITHIN_MS;
-  for (;;) {
-    try {
-      return (await stat(path)).size;
-    } catch (error) {
-      if (Date.now() > until) throw error;
-      await pause(50);
-    }
-  }
-}
+const sizeOf = async (path: string): Promise<number> => (await stat(path)).size;
 
 function photosIn(databaseCopy: string): string[] {
   const copy = new Database(databaseCopy, { readonly: true });

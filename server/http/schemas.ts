@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { CANONICAL_HEADERS } from '../../src/log/columnNames.ts';
 import { SectionGeometry } from '../../src/records/geometry.ts';
 import { FractureShape, PointPx, Reading, TraceSegment } from '../../src/records/reading.ts';
 import { Test, TestInput, TorqueDirection } from '../../src/records/test.ts';
@@ -218,6 +219,32 @@ export const ImportAnswer = z
     photosMeasured: z.number().int(),
   })
   .meta({ id: 'ImportSummary' });
+
+/** Columns mapped by hand: header of the file → canonical column; null leaves the column out. */
+export const ColumnMapping = z
+  .array(
+    z.object({
+      header: z.string().max(500),
+      column: nullable(z.enum(CANONICAL_HEADERS)),
+      unit: z.string().max(50).optional().describe('unit of the cells that carry none'),
+    }),
+  )
+  .max(500);
+
+export const LogPreviewAnswer = z.object({
+  name: z.string(),
+  encoding: z.string(),
+  delimiter: z.string(),
+  decimalMark: z.enum(['point', 'comma', 'mixed']),
+  headerLine: z.number().int(),
+  headers: z.array(z.string()),
+  columns: z.array(z.object({ header: z.string(), column: z.string(), unit: nullable(z.string()) })),
+  /** Every column a log may have, to choose from. */
+  knownColumns: z.array(z.string()),
+  rows: z.array(z.array(z.string())).describe('the first rows, cell by cell'),
+  remembered: z.boolean().describe('true when columns are mapped as the laboratory did before'),
+  notes: z.array(z.string()),
+});
 
 export const MeasuringAnswer = z.object({
   waiting: z.number().int(),

@@ -59,19 +59,30 @@ async function saveFile(
   return { bytes, sha256: hash.digest('hex') };
 }
 
-async function receive(request: FastifyRequest, folder: string, limits: UploadLimits): Promise<UploadedFile[]> {
+/** What a form holds. */
+export interface ReceivedForm {
+  readonly files: readonly UploadedFile[];
+  /** Text fields by name; of several with one name the last. */
+  readonly fields: ReadonlyMap<string, string>;
+}
+
+async function receive(request: FastifyRequest, folder: string, limits: UploadLimits): Promise<ReceivedForm> {
   const files: UploadedFile[] = [];
+  const fields = new Map<string, string>();
   let total = 0;
   const parts = request.parts({ limits: { fileSize: limits.fileBytes + 1, files: limits.files, fields: 50 } });
   for await (const part of parts) {
-    if (part.type !== 'file') continue;
+    if (part.type === 'field') {
+      fields.set(part.fieldname, String(part.value));
+      continue;
+    }
     const fileName = plainFileName(part.filename);
     const path = join(folder, String(files.length));
     const saved = await saveFile(part.file, path, fileName, limits, total);
     total += saved.bytes;
     files.push({ field: part.fieldname, fileName, path, ...saved });
   }
-  return files;
+  return { files, fields };
 }
 
 /**
@@ -82,7 +93,7 @@ export async function withUploads<Result>(
   request: FastifyRequest,
   incomingDir: string,
   limits: UploadLimits,
-  work: (files: readonly UploadedFile[], folder: string) => Promise<Result>,
+  work: (form: ReceivedForm) => Promise<Result>,
 ): Promise<Result> {
   if (!request.isMultipart()) {
     throw new LabError(
@@ -94,7 +105,7 @@ export async function withUploads<Result>(
   const folder = join(incomingDir, `upload-${randomUUID()}`);
   await mkdir(folder, { recursive: true });
   try {
-    return await work(await receive(request, folder, limits), folder);
+    return await work(await receive(request, folder, limits));
   } finally {
     await rm(folder, { recursive: true, force: true });
   }

@@ -74,8 +74,21 @@ export function startMeasuring({ store, pool, lanes, clock = Date.now, onFault }
     return pool.measure({ path: await store.photoPath(due.photoSha256), options: { diameterMm } });
   };
 
+  /** Whatever goes wrong with one photo is an answer about this photo; the queue goes on. */
+  const measureOrFault = (due: DueMeasurement): Promise<PhotoMeasurement> =>
+    measure(due).catch((error: unknown) => ({
+      outcome: 'not-measured',
+      reason: {
+        code: 'fault',
+        message: `measuring this photo failed: ${error instanceof Error ? error.message : String(error)}`,
+      },
+      sha256: due.photoSha256,
+      elapsedMs: 0,
+      warnings: [],
+    }));
+
   const work = async (due: DueMeasurement): Promise<void> => {
-    const result = await measure(due);
+    const result = await measureOrFault(due);
     const fault = result.outcome === 'not-measured' && result.reason.code === 'fault' ? result.reason.message : null;
     if (fault !== null && stopping) return;
     if (fault !== null && due.tries < MOST_TRIES) return store.measuring.giveBack(due, fault);

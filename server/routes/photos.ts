@@ -40,7 +40,7 @@ export function photoRoutes(app: TypedApp, { store, measuring, upright, limits }
     async (request, reply) => {
       const testId = request.params.id;
       await store.readTest(testId);
-      const kept = await withUploads(request, store.folder.incoming, limits.photos, async (files) => {
+      const kept = await withUploads(request, store.folder.incoming, limits.photos, async ({ files }) => {
         if (files.length === 0) {
           throw new LabError('missing-value', 'the form must hold at least one photo, got none', { input: 'photo' });
         }

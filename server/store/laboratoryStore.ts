@@ -1,4 +1,3 @@
-import { rm } from 'node:fs/promises';
 import { setImmediate as nextTurn } from 'node:timers/promises';
 import type Database from 'better-sqlite3';
 import type { Kysely } from 'kysely';
@@ -24,7 +23,7 @@ import { keepReading, markReading, renewStanding } from './keepReading.ts';
 import { listTestRows, rowOf, type TestFilter, type TestPage, type TestRow } from './listTests.ts';
 import { keepLogEntries } from './logEntries.ts';
 import { MeasuringWork, PRIORITY, type Urgency } from './measuringWork.ts';
-import { hasPhotoFile, photoFilePath, putInPlace, takeIn } from './photoFiles.ts';
+import { forget, type IncomingPhoto, photoFilePath, putInPlace, takeAway, takeIn } from './photoFiles.ts';
 import { addPhotoRecord, photosOfTest, readPhoto } from './photoRecords.ts';
 import { readingsOfTest, readingsOfTests, readReading } from './readings.ts';
 import type { StoreSchema } from './schema.ts';
@@ -61,10 +60,9 @@ export class LaboratoryStore implements LaboratoryRecords {
   /** The photos whose measurement is due. */
   readonly measuring: MeasuringWork;
   readonly #db: Db;
-  /** Photos whose files are on their way into place, by SHA-256. */
-  readonly #placing = new Map<string, Promise<unknown>>();
   readonly #clock: () => number;
   readonly #bulkInsert: BulkInsert;
+  #placing: Promise<void> = Promise.resolve();
 
   constructor({ folder, db, raw, clock }: OpenedStore) {
     this.folder = folder;
@@ -200,36 +198,36 @@ export class LaboratoryStore implements LaboratoryRecords {
    * @throws LabError `contradiction` when the bytes do not belong to the SHA-256, `not-found` without the test
    */
   async addPhoto(photo: Omit<Photo, 'addedAt'>, temporaryPath: string, urgency: Urgency = 'later'): Promise<Photo> {
-    const placed = this.#keepPhoto(photo, temporaryPath, urgency);
-    // The record is written before its file is in place: whoever asks for the file meanwhile waits for it.
-    const settled = placed.then(
-      () => undefined,
-      () => undefined,
-    );
-    const earlier = this.#placing.get(photo.sha256);
-    const both = Promise.all([earlier, settled]);
-    this.#placing.set(photo.sha256, both);
+    const incoming = await takeIn(this.folder, photo.sha256, temporaryPath);
     try {
-      return await placed;
+      return await this.#oneAfterTheOther(() => this.#placePhoto(photo, incoming, urgency));
     } finally {
-      void both.then(() => {
-        if (this.#placing.get(photo.sha256) === both) this.#placing.delete(photo.sha256);
-      });
+      await forget(incoming);
     }
   }
 
-  async #keepPhoto(photo: Omit<Photo, 'addedAt'>, temporaryPath: string, urgency: Urgency): Promise<Photo> {
-    const incoming = await takeIn(this.folder, photo.sha256, temporaryPath);
+  /** The file is at its place before its measurement is due, and is taken away again when its record cannot be written. */
+  async #placePhoto(photo: Omit<Photo, 'addedAt'>, incoming: IncomingPhoto, urgency: Urgency): Promise<Photo> {
+    const isNew = await putInPlace(this.folder, incoming);
     try {
-      const kept = await this.#change(async (db) => {
+      return await this.#change(async (db) => {
         if (photo.testId !== null) await readTestRecord(db, photo.testId);
         return addPhotoRecord(db, photo, this.#clock(), PRIORITY[urgency]);
       });
-      if (!(await hasPhotoFile(this.folder, photo.sha256))) await putInPlace(this.folder, incoming);
-      return kept;
-    } finally {
-      await rm(incoming.path, { force: true });
+    } catch (error) {
+      if (isNew) await takeAway(this.folder, photo.sha256);
+      throw error;
     }
+  }
+
+  /** Two photos with the same bytes must not meet between file and record. */
+  #oneAfterTheOther<Result>(work: () => Promise<Result>): Promise<Result> {
+    const result = this.#placing.then(work);
+    this.#placing = result.then(
+      () => {},
+      () => {},
+    );
+    return result;
   }
 
   photosOf(testId: string): Promise<Photo[]> {
@@ -247,7 +245,6 @@ export class LaboratoryStore implements LaboratoryRecords {
 
   async photoPath(sha256: string): Promise<string> {
     await readPhoto(this.#db, sha256);
-    await this.#placing.get(sha256);
     return photoFilePath(this.folder, sha256);
   }
 

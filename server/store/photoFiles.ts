@@ -1,11 +1,11 @@
 import { createHash, randomUUID } from 'node:crypto';
 import { createReadStream } from 'node:fs';
-import { access, copyFile, mkdir, open, readdir, rename, rm } from 'node:fs/promises';
+import { access, copyFile, link, mkdir, open, readdir, rename, rm } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
 import { LabError } from '../../src/errors.ts';
 import type { DataFolder } from './dataFolder.ts';
 
-/** A file that waits in `incoming` under the name of its content until its record is written. */
+/** A file in `incoming` under the name of its content, as long as its record is not written. */
 export interface IncomingPhoto {
   readonly sha256: string;
   readonly path: string;
@@ -72,16 +72,37 @@ export async function takeIn(folder: DataFolder, sha256: string, from: string): 
   return { sha256, path };
 }
 
-/** Puts a taken-in file at its place, once its record is written. */
-export async function putInPlace(folder: DataFolder, incoming: IncomingPhoto): Promise<void> {
+/**
+ * Puts a taken-in file at its place; it stays in `incoming` too, until its record is written (`forget`): so that after a
+ * crash in between the file at its place is known to belong to nothing.
+ * @returns whether it was not there yet
+ */
+export async function putInPlace(folder: DataFolder, incoming: IncomingPhoto): Promise<boolean> {
   const place = photoFilePath(folder, incoming.sha256);
+  if (await hasPhotoFile(folder, incoming.sha256)) return false;
   await mkdir(dirname(place), { recursive: true });
-  await rename(incoming.path, place);
+  try {
+    await link(incoming.path, place);
+  } catch {
+    // Not every file system knows links; a copy becomes visible whole as well.
+    const copy = `${incoming.path}.copy`;
+    await copyFile(incoming.path, copy);
+    await toDisk(copy);
+    await rename(copy, place);
+  }
   await toDisk(dirname(place));
+  return true;
 }
 
+/** Takes a file whose record was not written away from its place. */
+export const takeAway = (folder: DataFolder, sha256: string): Promise<void> =>
+  rm(photoFilePath(folder, sha256), { force: true });
+
+/** Takes a file out of `incoming`, once its record is written or given up. */
+export const forget = (incoming: IncomingPhoto): Promise<void> => rm(incoming.path, { force: true });
+
 /**
- * Ends what a crash interrupted: a file whose record was written is put in place, every other one is thrown away.
+ * Ends what a crash interrupted: a file whose record was written is at its place, every other one is thrown away.
  * @param hasRecord whether the store knows a photo with this SHA-256
  */
 export async function recoverIncoming(
@@ -91,12 +112,11 @@ export async function recoverIncoming(
   for (const name of await readdir(folder.incoming)) {
     const path = join(folder.incoming, name);
     const sha256 = KEEP.exec(name)?.[1];
-    const placed = sha256 !== undefined && (await hasPhotoFile(folder, sha256));
-    if (sha256 !== undefined && !placed && (await hasRecord(sha256)) && (await sha256OfFile(path)) === sha256) {
-      await putInPlace(folder, { sha256, path });
-    } else {
-      await rm(path, { recursive: true, force: true });
+    if (sha256 !== undefined) {
+      if (!(await hasRecord(sha256))) await takeAway(folder, sha256);
+      else if ((await sha256OfFile(path)) === sha256) await putInPlace(folder, { sha256, path });
     }
+    await rm(path, { recursive: true, force: true });
   }
 }
 

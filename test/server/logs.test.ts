@@ -3,7 +3,7 @@ import { join } from 'node:path';
 import { setTimeout as pause } from 'node:timers/promises';
 import { crc32 } from 'node:zlib';
 import { afterEach, beforeEach, describe, expect, test } from 'vitest';
-import { ImportAnswer } from '../../server/http/schemas.ts';
+import { ImportAnswer, LogPreviewAnswer } from '../../server/http/schemas.ts';
 import { brokenBarPng } from './drawnPhotos.ts';
 import { filesBelow, PROGRAM_DIR, type RunningLaboratory, runLaboratory } from './runningLaboratory.ts';
 
@@ -217,5 +217,66 @@ test('POST /api/v1/demo-laboratory loads the samples; the photos are measured in
   expect((await laboratory.ask('POST', '/api/v1/demo-laboratory', {})).body).toMatchObject({
     stored: 0,
     unchanged: rows,
+  });
+});
+
+describe('columns mapped by hand', () => {
+  const OWN = ['Nr;wann;Ø unten (mm);M', 'H-1;2026-05-04;12,5;85', 'H-2;2026-05-04;12,5;-80'].join('\n');
+  const MAPPING = [
+    { header: 'Nr', column: 'specimen_id' },
+    { header: 'wann', column: 'test_date' },
+    { header: 'Ø unten (mm)', column: 'diameter_mm' },
+    { header: 'M', column: 'torque_max_Nm', unit: 'N·m' },
+  ];
+  const ask = (path: string, mapping?: unknown) => {
+    const data = form(OWN);
+    if (mapping !== undefined) data.append('mapping', typeof mapping === 'string' ? mapping : JSON.stringify(mapping));
+    return laboratory.sendForm(path, data);
+  };
+
+  test('a preview shows how the log is read and keeps nothing', async () => {
+    const { status, body } = await ask('/api/v1/logs/preview', MAPPING);
+    expect(status, JSON.stringify(body)).toBe(200);
+    expect(LogPreviewAnswer.parse(body)).toEqual(body);
+    expect(body).toMatchObject({
+      delimiter: ';',
+      decimalMark: 'comma',
+      headers: ['Nr', 'wann', 'Ø unten (mm)', 'M'],
+      remembered: false,
+      rows: [
+        ['H-1', '2026-05-04', '12,5', '85'],
+        ['H-2', '2026-05-04', '12,5', '-80'],
+      ],
+    });
+    expect(body.columns.map(({ column }: { column: string }) => column)).toEqual([
+      'specimen_id',
+      'test_date',
+      'diameter_mm',
+      'torque_max_Nm',
+    ]);
+    expect((await laboratory.ask('GET', '/api/v1/laboratory')).body.tests).toBe(0);
+  });
+
+  test('an import follows them, and the next log of this kind is read the same way', async () => {
+    expect((await ask('/api/v1/logs', MAPPING)).body).toMatchObject({ rows: 2, stored: 2, refused: 0 });
+    const { body: page } = await laboratory.ask('GET', '/api/v1/tests?text=h-2');
+    expect(page.tests).toMatchObject([{ geometry: { diameterMm: 12.5 }, torqueMaxNm: 80, torqueDirection: 'cw' }]);
+    expect((await ask('/api/v1/logs/preview')).body).toMatchObject({ remembered: true });
+    expect((await ask('/api/v1/logs')).body).toMatchObject({ rows: 2, stored: 0, unchanged: 2 });
+  });
+
+  test('a mapping that cannot be is refused', async () => {
+    expect(await ask('/api/v1/logs', '{')).toMatchObject({
+      status: 422,
+      body: { code: 'invalid-request', input: 'mapping' },
+    });
+    expect(await ask('/api/v1/logs', [{ header: 'Nr', column: 'colour' }])).toMatchObject({
+      status: 422,
+      body: { input: '0.column' },
+    });
+    expect(await ask('/api/v1/logs/preview', [{ ...MAPPING[3], unit: 'furlong' }])).toMatchObject({
+      status: 422,
+      body: { code: 'unknown-unit' },
+    });
   });
 });

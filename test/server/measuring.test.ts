@@ -1,5 +1,5 @@
 import { createHash } from 'node:crypto';
-import { mkdtemp, rm, writeFile } from 'node:fs/promises';
+import { access, mkdtemp, rm, writeFile } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { setTimeout as pause } from 'node:timers/promises';
@@ -18,6 +18,7 @@ import { runLaboratory, testInput } from './runningLaboratory.ts';
 class WatchedPool implements MeasurePool {
   readonly asked: string[] = [];
   readonly faulty = new Set<string>();
+  readonly broken = new Set<string>();
   #held: (() => void)[] | null = null;
 
   hold(): void {
@@ -32,6 +33,8 @@ class WatchedPool implements MeasurePool {
   async measure({ path }: MeasureJob): Promise<PhotoMeasurement> {
     const sha256 = path.split(/[/\\]/).at(-1) ?? '';
     this.asked.push(sha256);
+    await access(path);
+    if (this.broken.has(sha256)) throw new Error('the pool itself is at fault');
     if (this.#held) await new Promise<void>((resume) => this.#held?.push(resume));
     const code = this.faulty.has(sha256) ? 'fault' : 'no-fracture';
     return {
@@ -161,17 +164,20 @@ describe('the measuring queue', () => {
     expect(await store.photosOf(testId)).toHaveLength(4);
   });
 
-  test('a photo at which measuring fails is tried again, then set aside with the reason; the others are measured', async () => {
-    const poisonous = await addPhoto('poison');
-    const good = await addPhoto('good');
-    pool.faulty.add(poisonous);
-    await measuring.settled(testId, poisonous);
-    await measuring.settled(testId, good);
-    expect(pool.asked.filter((one) => one === poisonous)).toHaveLength(MOST_TRIES);
-    expect(await measuring.progress()).toMatchObject({ waiting: 0, running: 0, done: 1, setAside: 1 });
-    const [first] = (await store.readingsOf(testId)).filter((one) => one.photoSha256 === poisonous);
-    expect(first?.result).toMatchObject({ outcome: 'not-measured', reason: { code: 'fault' } });
-  });
+  test.each(['faulty', 'broken'] as const)(
+    'a photo at which measuring fails (%s) is tried again, then set aside with the reason; the others are measured',
+    async (how) => {
+      const poisonous = await addPhoto('poison');
+      const good = await addPhoto('good');
+      pool[how].add(poisonous);
+      await measuring.settled(testId, poisonous);
+      await measuring.settled(testId, good);
+      expect(pool.asked.filter((one) => one === poisonous)).toHaveLength(MOST_TRIES);
+      expect(await measuring.progress()).toMatchObject({ waiting: 0, running: 0, done: 1, setAside: 1 });
+      const [first] = (await store.readingsOf(testId)).filter((one) => one.photoSha256 === poisonous);
+      expect(first?.result).toMatchObject({ outcome: 'not-measured', reason: { code: 'fault' } });
+    },
+  );
 
   test('what a crash interrupted is due again; a photo that ends the program every time is set aside', async () => {
     const poisonous = await addPhoto('poison');
@@ -188,11 +194,23 @@ describe('the measuring queue', () => {
     expect((await store.readRow(testId)).flags.map(({ code }) => code)).toEqual(['photo-not-measured']);
   });
 
+  test('a photo is at its place before its measurement is due, however busy the queue is', async () => {
+    measuring = startRunner(3);
+    const photos: string[] = [];
+    for (let i = 0; i < 30; i++) {
+      photos.push(await addPhoto(`busy ${i}`));
+      measuring.wake();
+    }
+    await Promise.all(photos.map((sha256) => measuring.settled(testId, sha256)));
+    expect(await measuring.progress()).toMatchObject({ done: 30, setAside: 0 });
+    expect(pool.asked).toHaveLength(30);
+  });
+
   test('a measurement that was ended meanwhile is not kept a second time', async () => {
     const sha256 = await addPhoto('photo');
     const due = await store.measuring.take();
     if (!due) throw new Error('there must be one');
-    const result = await pool.measure({ path: sha256 });
+    const result = await pool.measure({ path: await store.photoPath(sha256) });
     const reading = {
       testId,
       method: 'photo-automatic',

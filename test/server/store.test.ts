@@ -430,11 +430,15 @@ describe('the data folder', () => {
     const { sha256 } = await addPhoto(id, 'kept photo');
     const place = await store.photoPath(sha256);
     await store.close();
-    // As after a crash between the record and the rename: the file is not in its place yet.
+    // A file that is not in its place though its record is written.
     const bytes = await readFile(place);
     await rm(place);
     await writeFile(join(dataDir, 'incoming', `${sha256}.0a.keep`), bytes);
-    await writeFile(join(dataDir, 'incoming', `${sha256Of('unknown')}.0b.keep`), 'unknown');
+    // As after a crash before the record: the file is in its place, and belongs to nothing.
+    const unknown = sha256Of('unknown');
+    await mkdir(join(dataDir, 'photos', unknown.slice(0, 2), unknown.slice(2, 4)), { recursive: true });
+    await writeFile(join(dataDir, 'photos', unknown.slice(0, 2), unknown.slice(2, 4), unknown), 'unknown');
+    await writeFile(join(dataDir, 'incoming', `${unknown}.0b.keep`), 'unknown');
     await mkdir(join(dataDir, 'incoming', 'upload-1'));
     await writeFile(join(dataDir, 'incoming', 'upload-1', '0'), 'half of a pho');
     store = await openStore(dataDir);
