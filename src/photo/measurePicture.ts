@@ -104,7 +104,7 @@ export function measurePicture(picture: Picture, options: PictureOptions): Pictu
 }
 
 /** A reading less likely right than this is not given. */
-const LEAST_ACCEPTANCE = 0.5;
+const LEAST_ACCEPTANCE = 0.45;
 
 /** All ways to read the photo, the likeliest first. */
 export function readingsOf(picture: Picture): PhotoReading[] {
