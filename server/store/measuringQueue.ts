@@ -35,6 +35,8 @@ export async function takeNext(db: Db, nowMs: number, mostPatient: number): Prom
     .where('state', '=', 'waiting')
     .where('priority', '<=', mostPatient)
     .orderBy('priority')
+    // What was interrupted comes after the others: it may be what ended the program, and they are innocent.
+    .orderBy('tries')
     .orderBy('id')
     .limit(1)
     .executeTakeFirst();

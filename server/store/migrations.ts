@@ -159,6 +159,16 @@ const MIGRATIONS: Readonly<Record<string, Migration>> = {
   '0003-index-texts-together': {
     up: indexTextsTogether,
   },
+  '0004-interrupted-last': {
+    async up(db) {
+      await db.schema.dropIndex('measuring_next').execute();
+      await db.schema
+        .createIndex('measuring_next')
+        .on('measuring')
+        .columns(['state', 'priority', 'tries', 'id'])
+        .execute();
+    },
+  },
 };
 
 /**

@@ -194,6 +194,15 @@ describe('the measuring queue', () => {
     expect((await store.readRow(testId)).flags.map(({ code }) => code)).toEqual(['photo-not-measured']);
   });
 
+  test('what a crash interrupted comes after the others, so that they are not blamed for the next crash', async () => {
+    const [first, second] = [await addPhoto('first'), await addPhoto('second')];
+    expect(await store.measuring.take()).toMatchObject({ photoSha256: first, tries: 1 });
+    await store.close();
+    store = await openStore(dataDir);
+    expect(await store.measuring.take()).toMatchObject({ photoSha256: second, tries: 1 });
+    expect(await store.measuring.take()).toMatchObject({ photoSha256: first, tries: 2 });
+  });
+
   test('a photo is at its place before its measurement is due, however busy the queue is', async () => {
     measuring = startRunner(3);
     const photos: string[] = [];
