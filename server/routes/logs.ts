@@ -38,6 +38,9 @@ function onlyLog(files: readonly UploadedFile[]): UploadedFile {
 /** Test logs: import (or try out), fetch the refused rows. */
 export function logRoutes(app: TypedApp, service: Service): void {
   const { store, limits } = service;
+  // An import ends between two batches when the service stops, and says at which line; the same import again goes on there.
+  const stopping = new AbortController();
+  app.addHook('preClose', async () => stopping.abort());
 
   app.post(
     '/api/v1/logs',
@@ -64,6 +67,7 @@ export function logRoutes(app: TypedApp, service: Service): void {
             photos,
             dryRun,
             declared: { ...withoutUndefined(declared), ...(mapping && { mapping }) },
+            signal: stopping.signal,
           });
           if (mapping && !dryRun) await rememberMapping(store, source, mapping);
           return answer;

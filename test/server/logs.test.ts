@@ -220,6 +220,20 @@ test('POST /api/v1/demo-laboratory loads the samples; the photos are measured in
   });
 });
 
+test('an import ends in good order when the service stops, and the same import again goes on', async () => {
+  const rows = Array.from({ length: 20_000 }, (_, i) => `S-${i},2026-03-01,,,solid-round,12,85,ccw,,,`);
+  const log = [HEADER, ...rows].join('\n');
+  const importing = send(log);
+  for (let i = 0; i < 500 && (await laboratory.service.store.countTests()) === 0; i++) await pause(10);
+  const closing = laboratory.app.close();
+  const { status, body } = await importing;
+  expect(status).toBe(200);
+  expect(body.stoppedAtLine).toBeGreaterThan(1);
+  expect(body.rows).toBe(body.stoppedAtLine - 2);
+  await closing;
+  expect(await laboratory.service.store.countTests()).toBe(body.stored);
+});
+
 describe('columns mapped by hand', () => {
   const OWN = ['Nr;wann;Ø unten (mm);M', 'H-1;2026-05-04;12,5;85', 'H-2;2026-05-04;12,5;-80'].join('\n');
   const MAPPING = [
