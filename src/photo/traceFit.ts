@@ -202,6 +202,14 @@ type PieceKind = 'flat' | 'inclined' | 'steep';
 const kindOf = (deg: number): PieceKind =>
   Math.abs(deg) > STEEP_DEG ? 'steep' : Math.abs(deg) < FLAT_DEG ? 'flat' : 'inclined';
 
+/** A flat cut seen from its high or low side is an arch: three pieces and more whose slopes turn one way. */
+const ARCH_SCATTER = 0.06;
+const isArch = (pieces: readonly StraightPiece[]): boolean => {
+  if (pieces.length < 3) return false;
+  const turns = pieces.slice(1).map((p, i) => p.planeAngleDeg - (pieces[i] as StraightPiece).planeAngleDeg);
+  return turns.every((t) => t > 0 && t < 60) || turns.every((t) => t < 0 && t > -60);
+};
+
 /** Neighbouring pieces of one kind and hand are one segment with a bend: roughness, not a second segment. */
 function mergeAlike(points: readonly SurfacePoint[], pieces: readonly StraightPiece[]): StraightPiece[] {
   const merged: StraightPiece[] = [];
@@ -300,7 +308,9 @@ export function fitTrace(
     const pieces = mergeAlike(points, division.pieces);
     const sse = pieces.reduce((sum, p) => sum + p.sse, 0);
     const merged = criterion(sse, points.length, independent, 3 * pieces.length - 1);
-    if (pieces.length > 1 && merged < bestSingle.score - PIECES_MARGIN) {
+    const flat = singles.find((fit) => fit.name === 'flat');
+    const arch = flat !== undefined && flat.scatter < ARCH_SCATTER && isArch(pieces);
+    if (pieces.length > 1 && !arch && merged < bestSingle.score - PIECES_MARGIN) {
       const piecewise = describePieces(points, pieces, independentLimit);
       if (piecewise !== null) return piecewise;
     }
