@@ -95,6 +95,7 @@ export const TestRowAnswer = Test.extend({
   expandedUncertaintyDeg: nullable(z.number()),
   photoCount: z.number().int(),
   readingCount: z.number().int(),
+  reviewed: z.boolean().describe('somebody has looked at the test as it stands now'),
   flags: z.array(Flag),
 }).meta({ id: 'TestRow' });
 
@@ -142,6 +143,7 @@ export const ListQueryText = z.object({
   mode: z.enum([...FailureModeName.options, 'none']).optional(),
   flagged: flagText.optional(),
   measured: flagText.optional(),
+  reviewed: flagText.optional(),
   from: z.iso.date().optional(),
   to: z.iso.date().optional(),
   angleFromDeg: z.coerce.number().min(-90).max(90).optional(),
@@ -173,6 +175,12 @@ export const PhotoHandReading = z.object({
 });
 
 export const ReadingToAdd = z.discriminatedUnion('method', [InstrumentReading, PhotoHandReading]);
+
+export const Review = z.object({
+  version: z.number().int().positive().describe('version of the test that was looked at'),
+  by: z.string().trim().min(1).max(200).describe('who looked at it'),
+  note: z.string().trim().max(2000).optional(),
+});
 
 export const SetAside = z.object({
   setAside: z.boolean(),
@@ -263,7 +271,15 @@ export const HistoryAnswer = z.object({
       at: z.string(),
       by: nullable(z.string()),
       why: nullable(z.string()),
-      what: z.enum(['created', 'changed', 'reading-added', 'reading-set-aside', 'reading-taken-back', 'photo-added']),
+      what: z.enum([
+        'created',
+        'changed',
+        'reading-added',
+        'reading-set-aside',
+        'reading-taken-back',
+        'photo-added',
+        'reviewed',
+      ]),
       version: nullable(z.number().int()),
       changes: z.array(z.object({ field: z.string(), before: z.unknown(), after: z.unknown() })),
       readingId: nullable(z.string()),

@@ -4,9 +4,11 @@ import { Test } from '../../src/records/test.ts';
 import {
   HistoryAnswer,
   ListQueryText,
+  Review,
   SheetAnswer,
   TestIdParam,
   TestPageAnswer,
+  TestRowAnswer,
   TestToChange,
   TestToCreate,
 } from '../http/schemas.ts';
@@ -106,6 +108,23 @@ export function testRoutes(app: TypedApp, { store }: Service): void {
       const { change, ...input } = request.body;
       const version = versionOf(request.headers['if-match']);
       return tagged(reply, await store.changeTest(request.params.id, version, input, noteOf(change)));
+    },
+  );
+
+  app.post(
+    '/api/v1/tests/:id/reviews',
+    {
+      schema: {
+        ...TAG,
+        summary: 'Say that a person has looked at a test as it stands; any later change takes it back',
+        params: TestIdParam,
+        body: Review,
+        response: { 201: TestRowAnswer },
+      },
+    },
+    async (request, reply) => {
+      const { version, by, note } = request.body;
+      return reply.code(201).send(await store.reviewTest(request.params.id, version, by, note || null));
     },
   );
 

@@ -1,9 +1,9 @@
 import type Database from 'better-sqlite3';
 import type { Kysely } from 'kysely';
-import type { ReadingTable, StoreSchema, TestTable } from './schema.ts';
+import type { NewTestRecord, ReadingTable, StoreSchema } from './schema.ts';
 
 interface BulkTables {
-  readonly tests: TestTable;
+  readonly tests: NewTestRecord;
   readonly readings: ReadingTable;
 }
 

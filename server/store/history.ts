@@ -15,7 +15,14 @@ export interface HistoryEntry {
   readonly at: string;
   readonly by: string | null;
   readonly why: string | null;
-  readonly what: 'created' | 'changed' | 'reading-added' | 'reading-set-aside' | 'reading-taken-back' | 'photo-added';
+  readonly what:
+    | 'created'
+    | 'changed'
+    | 'reading-added'
+    | 'reading-set-aside'
+    | 'reading-taken-back'
+    | 'photo-added'
+    | 'reviewed';
   /** The version a change made; null for readings and photos. */
   readonly version: number | null;
   readonly changes: readonly FieldChange[];
@@ -105,6 +112,12 @@ export async function historyOfTest(db: Kysely<StoreSchema>, testId: string): Pr
         readingId: mark.reading_id,
         changes: [{ field: 'setAside', before: mark.set_aside !== 1, after: mark.set_aside === 1 }],
       }),
+    );
+  }
+  const reviews = await db.selectFrom('reviews').selectAll().where('test_id', '=', testId).orderBy('id').execute();
+  for (const review of reviews) {
+    entries.push(
+      entry({ at: review.made_at, by: review.made_by, why: review.note, what: 'reviewed', version: review.version }),
     );
   }
   return entries.sort((a, b) => (a.at < b.at ? -1 : a.at > b.at ? 1 : 0));

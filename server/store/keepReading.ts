@@ -63,8 +63,12 @@ export async function markReading(
     .execute();
 }
 
-/** Makes the derived columns of a test anew. */
+/** Makes the derived columns of a test anew after its readings changed; who reviewed it saw others. */
 export async function renewStanding(db: Db, test: Test): Promise<void> {
   const columns = standingColumns(test, await readingsOfTest(db, test.id));
-  await db.updateTable('tests').set(columns).where('id', '=', test.id).execute();
+  await db
+    .updateTable('tests')
+    .set({ ...columns, reviewed: 0 })
+    .where('id', '=', test.id)
+    .execute();
 }

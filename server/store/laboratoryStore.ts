@@ -23,10 +23,11 @@ import { keepReading, markReading, renewStanding } from './keepReading.ts';
 import { listTestRows, rowOf, type TestFilter, type TestPage, type TestRow } from './listTests.ts';
 import { keepLogEntries } from './logEntries.ts';
 import { MeasuringWork, PRIORITY, type Urgency } from './measuringWork.ts';
+import { orderedId } from './orderedId.ts';
 import { forget, type IncomingPhoto, photoFilePath, putInPlace, takeAway, takeIn } from './photoFiles.ts';
 import { addPhotoRecord, photosOfTest, readPhoto } from './photoRecords.ts';
 import { readingsOfTest, readingsOfTests, readReading } from './readings.ts';
-import type { StoreSchema } from './schema.ts';
+import type { StoreSchema, TestRecord } from './schema.ts';
 import { STANDING_REVISION, standingColumns } from './standing.ts';
 import { type ChangeNote, newTestRow, readTestRecord, replaceFields } from './testRows.ts';
 
@@ -52,6 +53,13 @@ const sameIdentity = (input: TestInput): LabError =>
     'already-exists',
     `specimen id and test date together must be new, got "${input.specimenId}"${input.testDate ? ` of ${input.testDate}` : ' without a date'}, which is already there`,
     { input: 'specimenId', value: input.specimenId },
+  );
+
+const changedMeanwhile = (expectedVersion: number, record: TestRecord): LabError =>
+  new LabError(
+    'changed-meanwhile',
+    `the test must still be at version ${expectedVersion}, got version ${record.version}: somebody changed it at ${record.updated_at}`,
+    { input: 'version', value: expectedVersion },
   );
 
 /** The laboratory's records in a data folder. Every call happens whole or not at all; nothing is ever overwritten. */
@@ -120,11 +128,7 @@ export class LaboratoryStore implements LaboratoryRecords {
     return this.#change(async (db) => {
       const record = await readTestRecord(db, id);
       if (record.version !== expectedVersion) {
-        throw new LabError(
-          'changed-meanwhile',
-          `the test must still be at version ${expectedVersion}, got version ${record.version}: somebody changed it at ${record.updated_at}`,
-          { input: 'version', value: expectedVersion },
-        );
+        throw changedMeanwhile(expectedVersion, record);
       }
       if (await this.#identityTaken(db, input, id)) throw sameIdentity(input);
       return testOf(await replaceFields(db, record, input, await readingsOfTest(db, id), this.#now(), note));
@@ -178,6 +182,30 @@ export class LaboratoryStore implements LaboratoryRecords {
       await markReading(db, id, setAside, this.#clock(), note);
       await renewStanding(db, testOf(await readTestRecord(db, reading.testId)));
       return readReading(db, id);
+    });
+  }
+
+  /**
+   * Says that a person has looked at a test as it stands; any later change of the test or its readings takes it back.
+   * @throws LabError `changed-meanwhile` when the version looked at is no longer the newest, `not-found`
+   */
+  reviewTest(id: string, expectedVersion: number, by: string, note: string | null): Promise<TestRow> {
+    return this.#change(async (db) => {
+      const record = await readTestRecord(db, id);
+      if (record.version !== expectedVersion) throw changedMeanwhile(expectedVersion, record);
+      await db
+        .insertInto('reviews')
+        .values({
+          id: orderedId(this.#clock()),
+          test_id: id,
+          version: record.version,
+          made_at: this.#now(),
+          made_by: by,
+          note,
+        })
+        .execute();
+      await db.updateTable('tests').set({ reviewed: 1 }).where('id', '=', id).execute();
+      return rowOf({ ...record, reviewed: 1 });
     });
   }
 

@@ -24,13 +24,16 @@ export interface TestFilter extends ListQuery {
   readonly to?: string;
   readonly angleFromDeg?: number;
   readonly angleToDeg?: number;
+  /** true: tests somebody has looked at as they stand now; false: the others. */
+  readonly reviewed?: boolean;
   /** true: tests with a plane angle; false: tests without. */
   readonly measured?: boolean;
   readonly sort?: SortOrder;
 }
 
 /** A test in the list, with what its readings say. */
-export type TestRow = Test & Standing & { readonly photoCount: number; readonly readingCount: number };
+export type TestRow = Test &
+  Standing & { readonly photoCount: number; readonly readingCount: number; readonly reviewed: boolean };
 
 export interface TestPage {
   readonly tests: TestRow[];
@@ -46,6 +49,7 @@ export const rowOf = (record: TestRecord): TestRow => ({
   expandedUncertaintyDeg: record.expanded_uncertainty_deg,
   photoCount: record.photo_count,
   readingCount: record.reading_count,
+  reviewed: record.reviewed === 1,
   flags: JSON.parse(record.flags),
 });
 
@@ -86,6 +90,7 @@ function conditions(e: Builder, query: TestFilter, indexed: boolean) {
     query.section === undefined ? null : e('section', '=', query.section),
     query.mode === undefined ? null : query.mode === 'none' ? e('mode', 'is', null) : e('mode', '=', query.mode),
     query.flagged === undefined ? null : e(number('flag_count'), query.flagged ? '>' : '=', 0),
+    query.reviewed === undefined ? null : e('reviewed', '=', query.reviewed ? 1 : 0),
     query.measured === undefined ? null : e(number('plane_angle_deg'), query.measured ? 'is not' : 'is', null),
     query.from === undefined ? null : e('sort_date', '>=', query.from),
     query.to === undefined ? null : e.and([e('sort_date', '<=', query.to), e('sort_date', '!=', '')]),

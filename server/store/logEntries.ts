@@ -118,7 +118,7 @@ export async function keepLogEntries(
   const tests = [...known.values()];
   for (const test of tests) {
     if (!test.touched) continue;
-    const standing = standingColumns(testOf(test.record), test.readings);
+    const standing = { ...standingColumns(testOf(test.record), test.readings), reviewed: 0 };
     test.record = { ...test.record, ...standing };
     if (!test.isNew) await db.updateTable('tests').set(standing).where('id', '=', test.record.id).execute();
   }

@@ -169,6 +169,25 @@ const MIGRATIONS: Readonly<Record<string, Migration>> = {
         .execute();
     },
   },
+  '0005-reviews': {
+    async up(db) {
+      await db.schema
+        .createTable('reviews')
+        .addColumn('id', 'text', (c) => c.primaryKey())
+        .addColumn('test_id', 'text', (c) => c.notNull().references('tests.id'))
+        .addColumn('version', 'integer', (c) => c.notNull())
+        .addColumn('made_at', 'text', (c) => c.notNull())
+        .addColumn('made_by', 'text', (c) => c.notNull())
+        .addColumn('note', 'text')
+        .execute();
+      await db.schema.createIndex('reviews_of_test').on('reviews').columns(['test_id', 'id']).execute();
+      await db.schema
+        .alterTable('tests')
+        .addColumn('reviewed', 'integer', (c) => c.notNull().defaultTo(0))
+        .execute();
+      await db.schema.createIndex('tests_by_review').on('tests').columns(['reviewed', 'sort_date', 'id']).execute();
+    },
+  },
 };
 
 /**

@@ -1,4 +1,4 @@
-import type { Selectable } from 'kysely';
+import type { Generated, Insertable, Selectable } from 'kysely';
 
 /** A test with the newest version of its fields, and what its readings say, kept beside it so that lists are fast. */
 export interface TestTable {
@@ -28,6 +28,8 @@ export interface TestTable {
   reading_count: number;
   flags: string;
   flag_count: number;
+  /** 1 when a person has looked at the test as it stands now; any change takes it back. */
+  reviewed: Generated<number>;
   /** Which assessment the derived columns come from; another one than today's is made anew. */
   assessed_with: string;
 }
@@ -65,6 +67,16 @@ export interface ReadingMarkTable {
   made_at: string;
   made_by: string | null;
   reason: string | null;
+}
+
+/** A person has looked at a test, as it stood at that version: only ever added. */
+export interface ReviewTable {
+  id: string;
+  test_id: string;
+  version: number;
+  made_at: string;
+  made_by: string;
+  note: string | null;
 }
 
 /** A photo of a test; the bytes lie once in the photo folder, however many tests they belong to. */
@@ -116,6 +128,7 @@ export interface StoreSchema {
   test_versions: TestVersionTable;
   readings: ReadingTable;
   reading_marks: ReadingMarkTable;
+  reviews: ReviewTable;
   photos: PhotoTable;
   measuring: MeasuringTable;
   imports: ImportTable;
@@ -123,3 +136,4 @@ export interface StoreSchema {
 }
 
 export type TestRecord = Selectable<TestTable>;
+export type NewTestRecord = Insertable<TestTable>;

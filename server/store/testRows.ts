@@ -4,7 +4,7 @@ import type { Reading } from '../../src/records/reading.ts';
 import type { TestInput } from '../../src/records/test.ts';
 import { columnsOf } from './documents.ts';
 import { orderedId } from './orderedId.ts';
-import type { StoreSchema, TestRecord, TestTable } from './schema.ts';
+import type { StoreSchema, TestRecord } from './schema.ts';
 import { standingColumns } from './standing.ts';
 
 type Db = Kysely<StoreSchema>;
@@ -16,7 +16,7 @@ export interface ChangeNote {
 }
 
 /** A new test without readings as a row. */
-export function newTestRow(input: TestInput, nowMs: number, note: ChangeNote): TestTable {
+export function newTestRow(input: TestInput, nowMs: number, note: ChangeNote): TestRecord {
   const now = new Date(nowMs).toISOString();
   return {
     id: orderedId(nowMs),
@@ -27,6 +27,7 @@ export function newTestRow(input: TestInput, nowMs: number, note: ChangeNote): T
     changed_by: note.by ?? null,
     change_reason: note.why ?? null,
     photo_count: 0,
+    reviewed: 0,
     ...standingColumns(input, []),
   };
 }
@@ -64,6 +65,7 @@ export async function replaceFields(
   const change = {
     ...columnsOf(input),
     ...standingColumns(input, readings),
+    reviewed: 0,
     version: record.version + 1,
     updated_at: now,
     changed_by: note.by ?? null,

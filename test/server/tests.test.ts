@@ -167,3 +167,57 @@ describe('GET /api/v1/tests', () => {
     expect(body).toMatchObject({ code, input });
   });
 });
+
+describe('POST /api/v1/tests/:id/reviews', () => {
+  const reviewed = async (id: string) => {
+    const { body } = await laboratory.ask('GET', '/api/v1/tests?reviewed=true&limit=500');
+    return body.tests.some((test: { id: string }) => test.id === id);
+  };
+  const review = (id: string, body: object) => laboratory.ask('POST', `/api/v1/tests/${id}/reviews`, body);
+
+  test('says who has looked at a test; a change of the test takes it back', async () => {
+    const { id, specimenId } = await entered();
+    expect(await reviewed(id)).toBe(false);
+    const { status, body } = await review(id, { version: 1, by: 'Dr. Vey', note: 'seen with the piece in hand' });
+    expect(status).toBe(201);
+    expect(body).toMatchObject({ id, reviewed: true, version: 1 });
+    expect(await reviewed(id)).toBe(true);
+    await laboratory.ask('PUT', `/api/v1/tests/${id}`, testInput({ specimenId, heat: 'other' }), { 'if-match': '"1"' });
+    expect(await reviewed(id)).toBe(false);
+    const { body: kept } = await laboratory.ask('GET', `/api/v1/tests/${id}/history`);
+    expect(HistoryAnswer.parse(kept).history).toMatchObject([
+      { what: 'created' },
+      { what: 'reviewed', by: 'Dr. Vey', why: 'seen with the piece in hand', version: 1 },
+      { what: 'changed', version: 2 },
+    ]);
+  });
+
+  test('a new reading, and setting one aside, take it back too', async () => {
+    const { id } = await entered();
+    await review(id, { version: 1, by: 'Ada' });
+    const { body } = await laboratory.ask('POST', `/api/v1/tests/${id}/readings`, {
+      method: 'instrument',
+      planeAngleDeg: 43,
+      expandedUncertaintyDeg: 2,
+      instrument: 'protractor',
+    });
+    expect(await reviewed(id)).toBe(false);
+    await review(id, { version: 1, by: 'Ada' });
+    expect(await reviewed(id)).toBe(true);
+    await laboratory.ask('POST', `/api/v1/readings/${body.reading.id}/set-aside`, { setAside: true, why: 'wrong end' });
+    expect(await reviewed(id)).toBe(false);
+  });
+
+  test('refuses nobody, a version that is not the newest, an unknown test', async () => {
+    const { id } = await entered();
+    expect(await review(id, { version: 1, by: ' ' })).toMatchObject({
+      status: 422,
+      body: { code: 'missing-value', input: 'by' },
+    });
+    expect(await review(id, { version: 2, by: 'Ada' })).toMatchObject({
+      status: 409,
+      body: { code: 'changed-meanwhile' },
+    });
+    expect(await review('nowhere', { version: 1, by: 'Ada' })).toMatchObject({ status: 404 });
+  });
+});
