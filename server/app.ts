@@ -6,7 +6,7 @@ import { jsonSchemaTransform, jsonSchemaTransformObject } from 'fastify-type-pro
 import type { z } from 'zod';
 import { answerErrors } from './http/errors.ts';
 import { refuseForeigners } from './http/loopback.ts';
-import { servePage } from './http/page.ts';
+import { type PlaceOfPage, servePage } from './http/page.ts';
 import { parseOrRefuse } from './http/requestInvalid.ts';
 import { classifyRoutes } from './routes/classify.ts';
 import { exportRoutes } from './routes/exports.ts';
@@ -85,9 +85,9 @@ export async function buildApp(service: Service, logger?: FastifyBaseLogger): Pr
     transform: jsonSchemaTransform,
     transformObject: jsonSchemaTransformObject,
   });
-  let isPlaceOfPage: (path: string) => boolean = () => false;
-  answerErrors(app, (path) => isPlaceOfPage(path));
-  isPlaceOfPage = await servePage(app, service.programDir);
+  let placeOf: (path: string) => PlaceOfPage = () => 'none';
+  answerErrors(app, (path) => placeOf(path));
+  placeOf = await servePage(app, service.programDir);
   laboratoryRoutes(app, service);
   testRoutes(app, service);
   photoRoutes(app, service);

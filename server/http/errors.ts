@@ -1,5 +1,6 @@
 import type { FastifyInstance, FastifyReply } from 'fastify';
 import { LabError } from '../../src/errors.ts';
+import type { PlaceOfPage } from './page.ts';
 import { type ProblemDetails, problemOfFault, problemOfLabError, problemOfStatus } from './problem.ts';
 import { RequestInvalid } from './requestInvalid.ts';
 
@@ -49,7 +50,7 @@ function methodsByPattern(app: FastifyInstance): (path: string) => string[] {
 }
 
 /** One place answers every error: problem details as in RFC 9457. Must be called before the routes. */
-export function answerErrors(app: FastifyInstance, fallback: (path: string) => boolean): void {
+export function answerErrors(app: FastifyInstance, placeOf: (path: string) => PlaceOfPage): void {
   const methodsOf = methodsByPattern(app);
   app.setErrorHandler((error, request, reply) => {
     const problem = problemOf(error, request.id);
@@ -63,8 +64,12 @@ export function answerErrors(app: FastifyInstance, fallback: (path: string) => b
       const detail = `${path} must be asked with ${methods.join(', ')}, got ${request.method}`;
       return sendProblem(reply.header('allow', methods.join(', ')), problemOfStatus(405, detail), request.url);
     }
-    if (request.method === 'GET' && fallback(path))
-      return reply.header('cache-control', 'no-cache').sendFile('index.html');
+    const place = request.method === 'GET' || request.method === 'HEAD' ? placeOf(path) : 'none';
+    if (place === 'page') return reply.header('cache-control', 'no-cache').sendFile('index.html');
+    if (place === 'not-built') {
+      const detail = 'the page must be built, got a program without it; run "npm run build" and start again';
+      return sendProblem(reply, problemOfStatus(404, detail), request.url);
+    }
     return sendProblem(reply, problemOfStatus(404, `there must be something at ${path}, got nothing`), request.url);
   });
 }

@@ -70,6 +70,7 @@ export async function runLaboratory(
     readonly limits?: Partial<ServiceLimits>;
     readonly lanes?: number;
     readonly report?: ReportRenderer;
+    readonly programDir?: string;
   } = {},
 ): Promise<RunningLaboratory> {
   const dataDir = await mkdtemp(join(tmpdir(), 'breakplane-test-'));
@@ -85,7 +86,7 @@ export async function runLaboratory(
     upright,
     report: options.report ?? null,
     limits: { ...DEFAULT_LIMITS, ...options.limits },
-    programDir: PROGRAM_DIR,
+    programDir: options.programDir ?? PROGRAM_DIR,
     version: '0.0.0-test',
   };
   const app = await buildApp(service);
