@@ -10,6 +10,7 @@ import type { LogDeclarations } from '../../src/log/node/planImport.ts';
 import { refusedRowLine, refusedRowsHeader } from '../../src/log/refusedRows.ts';
 import type { Service } from '../service.ts';
 import { orderedId } from '../store/orderedId.ts';
+import { noteOnUnnamed, watchPhotos } from './unnamedPhotos.ts';
 
 export interface ImportRequest {
   readonly source: LogSource;
@@ -55,10 +56,11 @@ export async function runImport(service: Service, request: ImportRequest): Promi
   const startedAt = new Date().toISOString();
   const pending = join(store.folder.incoming, `${id}-refused.csv`);
   const refused = refusedRowsWriter(pending);
+  const watched = request.photos && watchPhotos(request.photos);
   try {
-    const summary = await importLog({
+    const imported = await importLog({
       source: request.source,
-      photos: request.photos,
+      photos: watched?.source ?? null,
       records: store,
       pool: null,
       dryRun: request.dryRun,
@@ -68,6 +70,8 @@ export async function runImport(service: Service, request: ImportRequest): Promi
       onPhotoKept: () => measuring.wake(),
       temporaryDir: store.folder.incoming,
     });
+    const note = watched && !request.dryRun ? noteOnUnnamed(watched.unnamed()) : null;
+    const summary = note === null ? imported : { ...imported, notes: [...imported.notes, note] };
     if (await refused.end()) await rename(pending, refusedRowsPath(service, id));
     await store.keepImport({
       id,

@@ -163,6 +163,17 @@ describe('POST /api/v1/logs', () => {
     expect(page.tests.map((one: { mode: string }) => one.mode)).toEqual(['normal-stress', 'normal-stress']);
   });
 
+  test('a photo that no row names is said, not lost in silence', async () => {
+    const photo = await brokenBarPng();
+    const { body } = await send(LOG, [
+      { name: 'L-1.png', bytes: photo },
+      { name: 'other.png', bytes: photo },
+    ]);
+    expect(body.photosQueued).toBe(1);
+    expect(body.notes.join(' ')).toContain('One photo is named by no row and not kept: "other.png"');
+    expect((await send(LOG)).body.notes.join(' ')).not.toContain('named by no row');
+  });
+
   test.each([
     ['no log', null, [], 422, 'invalid-request'],
     ['a log without rows that can be read', 'hello', [], 422, 'not-a-log'],
