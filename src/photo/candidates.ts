@@ -184,7 +184,7 @@ export function findHalves(levels: Levels, candidates: readonly Candidate[]): Ha
       );
       if (runsOut) return { end, cutByPhoto: true, rim: null };
       const rim = searchRim(small, frame, candidate, end, Math.max(1 / RIM_STEPS, 1 / frame.radiusPx));
-      return { end, cutByPhoto: false, rim };
+      return { end, cutByPhoto: rim === null, rim };
     });
     return { candidate, rims };
   });

@@ -74,8 +74,11 @@ export function searchRim(
   const points: SurfacePoint[] = [];
   let sum = 0;
   let clear = 0;
+  let outside = 0;
   for (let r = 0; r < rows; r++) {
     const j = boundary[r] as number;
+    const beyond = first + end * Math.min(count - 1, j + reach + 1);
+    if (map.seen[r * map.columns + Math.max(0, Math.min(map.columns - 1, beyond))] !== 1) outside += 1;
     points.push({
       x: map.firstX + (first + end * j - end * 0.5) * map.stepRadii,
       phi: map.firstPhi + r * map.stepRadii,
@@ -84,9 +87,13 @@ export function searchRim(
     sum += s;
     if (s > 2) clear += 1;
   }
+  // The border of the photo is no rim.
+  if (outside > MOST_OUTSIDE * rows) return null;
   return { points, contrast: sum / rows, clearShare: clear / rows };
 }
 
+/** Share of the rim that may lie at the border of the photo. */
+const MOST_OUTSIDE = 0.15;
 const UNLIKE_MOST = 22;
 const UNLIKE_LIMIT = 8;
 const STEP_WEIGHT = 5;
