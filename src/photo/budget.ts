@@ -89,6 +89,8 @@ export function measureTrace(input: {
   readonly lipsPx?: readonly [readonly PhotoPoint[], readonly PhotoPoint[]];
   readonly cameraTiltStandardUncertaintyDeg: number;
   readonly independentLimit?: number;
+  /** Spread of the angle over other edges that could be the specimen's, standard uncertainty, degrees. */
+  readonly edgeChoiceDeg?: number;
   /** Standard uncertainty of one trace point across the trace, px. */
   readonly pointUncertaintyPx: number;
 }): TraceMeasurement | null {
@@ -186,6 +188,16 @@ export function measureTrace(input: {
       ? []
       : [
           line('lips', lips, 'A', 'half the difference between the two lips of the gap, two measurements of one plane'),
+        ]),
+    ...(input.edgeChoiceDeg === undefined
+      ? []
+      : [
+          line(
+            'edge-choice',
+            input.edgeChoiceDeg,
+            'B',
+            'other edges that could be those of the specimen, weighted by how likely they are',
+          ),
         ]),
     line('model-choice', fit.modelUncertaintyDeg, 'B', 'difference between shapes that fit about as well'),
   ];

@@ -102,7 +102,7 @@ export function measurePicture(picture: Picture, options: PictureOptions): Pictu
   }
   if (accepted < (options.leastAcceptance ?? LEAST_ACCEPTANCE))
     return { ...whyNot(readings, best), ...where, quality: { ...quality } };
-  const result = measureReading(picture, best, options);
+  const result = measureReading(picture, best, edgeChoiceDeg(readings, best), options);
   if (result === null) {
     return {
       ...refusal('no-fracture', 'the trace is too short to have a direction'),
@@ -196,7 +196,12 @@ const CENTRE_REACH = 0.22;
 const GAP_BAND = 0.25;
 const RIM_BAND = 0.12;
 
-function measureReading(picture: Picture, reading: PhotoReading, options: PictureOptions): Measured | null {
+function measureReading(
+  picture: Picture,
+  reading: PhotoReading,
+  edgeChoice: number,
+  options: PictureOptions,
+): Measured | null {
   const { frame, uncertainty } = fineFrame(picture, reading.candidate, options);
   const stepRadii = Math.max(FINEST_STEP, 1 / frame.radiusPx);
   // The trace is followed in a parallel view: which azimuth a row is does not matter for following it.
@@ -229,6 +234,7 @@ function measureReading(picture: Picture, reading: PhotoReading, options: Pictur
     tracePx: inPicture(points),
     ...(lipsPx === undefined ? {} : { lipsPx }),
     cameraTiltStandardUncertaintyDeg: options.cameraTiltStandardUncertaintyDeg,
+    edgeChoiceDeg: edgeChoice,
     pointUncertaintyPx: Math.max(0.5, 0.5 * stepRadii * frame.radiusPx),
   });
   if (options.onStage !== undefined) {
@@ -251,6 +257,28 @@ function measureReading(picture: Picture, reading: PhotoReading, options: Pictur
     }
   }
   return measured === null ? null : { reading, frame, points, measured };
+}
+
+/** Readings further apart than this see another trace, not other edges of the same one, degrees. */
+const SAME_TRACE_DEG = 8;
+
+/**
+ * Spread of the plane angle over readings of the same trace between other edges, each weighted by its odds against the
+ * best one (the values are log odds): what the choice of the edges leaves uncertain.
+ */
+function edgeChoiceDeg(readings: readonly PhotoReading[], best: PhotoReading): number {
+  if (best.fit === null) return 0;
+  let weight = 0;
+  let sum = 0;
+  for (const { view, fit, value } of readings) {
+    if (view !== best.view || fit === null || fit.shape === 'mixed') continue;
+    const apart = planeAngleDistanceDeg(fit.planeAngleDeg, best.fit.planeAngleDeg);
+    if (apart > SAME_TRACE_DEG) continue;
+    const odds = Math.exp(value - best.value);
+    weight += odds;
+    sum += odds * apart * apart;
+  }
+  return weight > 0 ? Math.sqrt(sum / weight) : 0;
 }
 
 function fineFrame(
