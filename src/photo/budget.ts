@@ -1,6 +1,6 @@
 import { degToRad, planeAngleDistanceDeg, radToDeg } from '../angle.ts';
 import type { BudgetLine } from '../records/reading.ts';
-import { type CameraBow, fitTrace, type TraceFit } from './traceFit.ts';
+import { type CameraBow, fitTrace, QUICK_POINTS, type TraceFit } from './traceFit.ts';
 import { type PhotoPoint, type SpecimenFrame, toSurface } from './unroll.ts';
 
 /**
@@ -95,18 +95,24 @@ export function measureTrace(input: {
   readonly pointUncertaintyPx: number;
 }): TraceMeasurement | null {
   const { frame, frameUncertainty: u, tracePx } = input;
-  const fitWith = (f: SpecimenFrame, points = tracePx): TraceFit | null => {
+  const fitWith = (f: SpecimenFrame, points = tracePx, count?: number): TraceFit | null => {
     const surface = points.map((p) => toSurface(f, p));
     const middle = surface.reduce((sum, p) => sum + p.x, 0) / Math.max(1, surface.length);
     const offset = middle - f.cameraAlongRadii;
     const bow = cameraBow(f, u, offset, input.cameraTiltStandardUncertaintyDeg);
-    return fitTrace(surface, bow, input.independentLimit);
+    return fitTrace(surface, bow, input.independentLimit, count);
   };
   const fit = fitWith(frame);
   if (fit === null) return null;
-  const change = (other: TraceFit | null): number =>
-    other === null || other.shape !== fit.shape ? 0 : planeAngleDistanceDeg(other.planeAngleDeg, fit.planeAngleDeg);
-  const larger = (a: SpecimenFrame, b: SpecimenFrame) => Math.max(change(fitWith(a)), change(fitWith(b)));
+  // Only differences are wanted here: a quick fit of each, against a quick fit of the frame itself.
+  const quick = fitWith(frame, tracePx, QUICK_POINTS);
+  const change = (moved: SpecimenFrame): number => {
+    const other = fitWith(moved, tracePx, QUICK_POINTS);
+    return other === null || quick === null || other.shape !== quick.shape
+      ? 0
+      : planeAngleDistanceDeg(other.planeAngleDeg, quick.planeAngleDeg);
+  };
+  const larger = (a: SpecimenFrame, b: SpecimenFrame) => Math.max(change(a), change(b));
 
   const turned = (deg: number): SpecimenFrame => {
     const t = degToRad(deg);
