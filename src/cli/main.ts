@@ -6,6 +6,7 @@ import { importCommand } from './commands/import.ts';
 import { measureCommand } from './commands/measure.ts';
 import { reportCommand } from './commands/report.ts';
 import { serveCommand } from './commands/serve.ts';
+import { statisticsCommand } from './commands/statistics.ts';
 import type { CommandContext } from './context.ts';
 import { EXIT } from './exitStatus.ts';
 import { openOutput, showsColours } from './output.ts';
@@ -16,6 +17,7 @@ const COMMANDS = [
   classifyCommand,
   importCommand,
   reportCommand,
+  statisticsCommand,
   serveCommand,
   backupCommand,
   restoreCommand,

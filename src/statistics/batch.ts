@@ -5,7 +5,7 @@ import { type OddTest, oddTestsOf } from './oddTests.ts';
 import { type Share, shareOf } from './proportions.ts';
 import { type RosePetal, rosePetals } from './rose.ts';
 import { type SampleMoments, sampleMoments } from './sample.ts';
-import { notesOnSize } from './smallSamples.ts';
+import { FEW_TESTS, notesOnSize } from './smallSamples.ts';
 import { type StrengthSummary, strengthSummary } from './strength.ts';
 import { fitWeibull, type WeibullFit } from './weibull.ts';
 
@@ -23,7 +23,7 @@ export interface GroupSummary {
   readonly planeTiltsDeg: SampleMoments | null;
   /** Elastic torsional strengths. */
   readonly strength: StrengthSummary | null;
-  /** For groups that break by normal stress; null for others and where no fit is possible. */
+  /** For groups that break by normal stress; null for others, for fewer than `FEW_TESTS`, and where no fit is possible. */
   readonly weibull: WeibullFit | null;
   /** Drift of the strength, MPa a year. */
   readonly strengthDrift: Drift | null;
@@ -45,12 +45,15 @@ function modesOf(tests: readonly BatchTest[]): GroupSummary['modes'] {
     .map(([mode, count]) => ({ mode, share: shareOf(count, all) }));
 }
 
-/** Most tests with a stated mode broke by normal stress: the strength of such a material is that of its largest flaw. */
-const isBrittle = (modes: GroupSummary['modes']): boolean => modes[0]?.mode === 'normal-stress';
+/** More than half broke by normal stress: the strength of such a material is that of its largest flaw. */
+const isBrittle = (modes: GroupSummary['modes']): boolean =>
+  modes[0]?.mode === 'normal-stress' && modes[0].share.share > 0.5;
 
 function weibullOf(strengthsMPa: readonly number[], brittle: boolean): WeibullFit | null {
   const differ = strengthsMPa.some((s) => Math.abs(s / (strengthsMPa[0] ?? s) - 1) > 1e-3);
-  return brittle && differ && strengthsMPa.every((s) => s > 0) ? fitWeibull(strengthsMPa) : null;
+  return brittle && differ && strengthsMPa.length >= FEW_TESTS && strengthsMPa.every((s) => s > 0)
+    ? fitWeibull(strengthsMPa)
+    : null;
 }
 
 /** Statistics of one group of tests. Pure: the same tests give the same answer on the page, in the service and in a report. */

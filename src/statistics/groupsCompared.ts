@@ -99,7 +99,12 @@ export function compareGroups(groups: readonly NamedGroup[]): GroupComparison {
   const notes: string[] = [];
   const strengths = groups.map(strengthsOf).filter((values) => values.length > 1);
   const alone = groups.filter((group) => strengthsOf(group).length === 1).length;
-  if (alone > 0 && strengths.length > 0) notes.push(`${alone} groups with one strength only are not compared.`);
+  if (alone > 0 && strengths.length > 0)
+    notes.push(
+      alone === 1
+        ? 'One group with a single strength is not compared.'
+        : `${alone} groups with a single strength are not compared.`,
+    );
   const axes = axesOf(groups);
   if (axes && !axes.trustworthy) {
     notes.push('The plane angles scatter so much that their mean axes cannot be compared by the Watson–Williams test.');

@@ -1,11 +1,10 @@
 import { rename, writeFile } from 'node:fs/promises';
 import { Command } from 'commander';
 import { LabError } from '../../errors.ts';
-import type { LaboratoryRecords } from '../../records/laboratoryRecords.ts';
-import type { Test } from '../../records/test.ts';
 import { REPORT_FORMATS, renderReport } from '../../report/node/render.ts';
 import type { ReportedTest } from '../../report/summary.ts';
 import { assessTest } from '../../verdict/assessTest.ts';
+import { chosenTests, noTestFits } from '../chooseTests.ts';
 import type { CommandContext } from '../context.ts';
 import { dataDirOption } from './options.ts';
 
@@ -29,56 +28,8 @@ Examples:
 --test takes the specimen id or the id of a record; --where FIELD=VALUE takes material, heat or text (a search).
 Without either, every test of the laboratory is reported.`;
 
-const PAGE = 200;
+/** More single reports in one document than anybody prints. */
 const MOST_TESTS = 5000;
-
-async function everyTest(
-  records: LaboratoryRecords,
-  query: { text?: string; material?: string; heat?: string },
-): Promise<Test[]> {
-  const found: Test[] = [];
-  let cursor: string | null = null;
-  do {
-    const page: { tests: Test[]; nextCursor: string | null } = await records.listTests({
-      limit: PAGE,
-      ...query,
-      ...(cursor !== null && { cursor }),
-    });
-    found.push(...page.tests);
-    cursor = page.nextCursor;
-  } while (cursor !== null && found.length < MOST_TESTS);
-  return found;
-}
-
-async function testNamed(records: LaboratoryRecords, name: string): Promise<Test[]> {
-  const named = (await everyTest(records, { text: name })).filter((t) => t.specimenId === name || t.id === name);
-  if (named.length > 0) return named;
-  return [
-    await records.readTest(name).catch(() => {
-      throw new LabError('not-found', `--test must be a specimen id or the id of a test, got "${name}"`, {
-        input: '--test',
-        value: name,
-      });
-    }),
-  ];
-}
-
-async function selected(records: LaboratoryRecords, flags: ReportFlags): Promise<Test[]> {
-  if (flags.test !== undefined && flags.test.length > 0) {
-    return (await Promise.all(flags.test.map((name) => testNamed(records, name)))).flat();
-  }
-  if (flags.where === undefined) return everyTest(records, {});
-  const at = flags.where.indexOf('=');
-  const field = flags.where.slice(0, at).trim();
-  const value = flags.where.slice(at + 1).trim();
-  if (at < 1 || value === '' || (field !== 'material' && field !== 'heat' && field !== 'text')) {
-    throw new LabError('usage', `--where must be material=…, heat=… or text=…, got "${flags.where}"`, {
-      input: '--where',
-      value: flags.where,
-    });
-  }
-  return everyTest(records, { [field]: value });
-}
 
 function madeAt(text: string | undefined): Date {
   if (text === undefined) return new Date();
@@ -91,6 +42,11 @@ function madeAt(text: string | undefined): Date {
   }
   return date;
 }
+
+const tooMany = (): LabError =>
+  new LabError('too-large', `a report must have at most ${MOST_TESTS} tests, got more; narrow them with --where`, {
+    input: '--where',
+  });
 
 /** `breakplane report`: the summary of tests as a document. */
 export function reportCommand(context: CommandContext): Command {
@@ -123,14 +79,13 @@ export function reportCommand(context: CommandContext): Command {
       const moment = madeAt(flags.date);
       const records = await ports.openRecords(flags.data);
       try {
-        const chosen = await selected(records, flags);
-        if (chosen.length === 0)
-          throw new LabError('not-found', 'no test fits what was asked for', { input: '--where', value: flags.where });
         const tests: ReportedTest[] = [];
-        for (const test of chosen) {
+        for await (const test of chosenTests(records, flags)) {
+          if (tests.length === MOST_TESTS) throw tooMany();
           const readings = await records.readingsOf(test.id);
           tests.push({ test, readings, assessment: assessTest(test, readings) });
         }
+        if (tests.length === 0) throw noTestFits(flags);
         const bytes = await renderReport({
           tests,
           format,
