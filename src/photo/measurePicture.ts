@@ -91,12 +91,12 @@ export function measurePicture(picture: Picture, options: PictureOptions): Pictu
   const poor = tooPoor(quality);
   if (poor !== null) return { ...refusal(poor.code, poor.message), ...where, quality: { ...quality } };
   const lost = best.features.missingEnd ?? 0;
-  if (best.view === 'pair' && best.features.steep !== 1 && lost > MOST_LOST && options.leastAcceptance === undefined) {
+  if (best.view === 'pair' && best.features.steep !== 1 && lost > MOST_LOST) {
     const message = `the trace is lost ${Math.round(100 * lost)} % of the way from one edge; light it better, or set the trace by hand`;
     return { ...refusal('no-fracture', message), ...where, quality: { ...quality } };
   }
   const second = best.candidate.trace?.secondCostPerRow ?? 1;
-  if (best.view === 'pair' && second < CLEAR_SECOND && options.leastAcceptance === undefined) {
+  if (best.view === 'pair' && second < CLEAR_SECOND) {
     const message = 'more than one line runs right across the specimen; clear marks away, or set the trace by hand';
     return { ...refusal('ambiguous', message), ...where, quality: { ...quality } };
   }
