@@ -12,6 +12,7 @@ import type { LogSource } from './logSource.ts';
 import type { PhotoSource } from './photoSource.ts';
 import { type ImportPlan, type LogDeclarations, planImport } from './planImport.ts';
 import { type LogRow, readRows } from './readRows.ts';
+import { type KeptSpecimen, photosFoundBySpecimen } from './unnamedPhotos.ts';
 
 export interface ImportProgress {
   readonly phase: 'rows' | 'photos';
@@ -50,6 +51,8 @@ class Tally {
   readonly refusals: Refusal[] = [];
   readonly photoProblems: PhotoProblem[] = [];
   readonly wanted: WantedPhoto[] = [];
+  /** Kept rows, as far as a photo may belong to them. */
+  readonly kept: KeptSpecimen[] = [];
   stoppedAtLine: number | null = null;
 }
 
@@ -95,8 +98,8 @@ interface KeepableRow {
 
 /**
  * Imports a test log: every row that can be kept is kept, some hundred at a time in one transaction each; every other row
- * is refused with line, column and reason, and costs only itself. The same log twice changes nothing. Memory does not
- * grow with the length of the log, but for what is refused (up to `MOST_LISTED`) and the photos that rows name.
+ * is refused with line, column and reason, and costs only itself. The same log twice changes nothing. Of the rows read, only
+ * specimen id and date are held (to find repeated ones), what was refused (up to `MOST_LISTED`), and the photos named.
  * @throws LabError `not-a-log` for a file without a header row that can be read
  */
 export async function importLog(work: ImportLog): Promise<ImportSummary> {
@@ -168,25 +171,33 @@ export async function importLog(work: ImportLog): Promise<ImportSummary> {
       }
       tally[answer.outcome] += 1;
       if (answer.readingAdded) tally.readingsAdded += 1;
-      for (const name of photoNames) {
-        tally.wanted.push({
-          line: row.line,
-          specimenId: entry.test.specimenId,
-          name,
-          testId: answer.testId,
-          diameterMm: 'diameterMm' in entry.test.geometry ? entry.test.geometry.diameterMm : null,
-        });
-      }
+      const specimen: KeptSpecimen = {
+        line: row.line,
+        specimenId: entry.test.specimenId,
+        testId: answer.testId,
+        diameterMm: 'diameterMm' in entry.test.geometry ? entry.test.geometry.diameterMm : null,
+      };
+      if (work.photos !== null) tally.kept.push(specimen);
+      for (const name of photoNames) tally.wanted.push({ ...specimen, name });
     });
     work.onProgress?.({ phase: 'rows', done: tally.rows, total: null });
   }
 
   const photos = { queued: 0, measured: 0 };
   const notes = [...plan.notes];
-  if (work.photos !== null && records !== null && !dryRun && tally.wanted.length > 0) {
-    for (const { name, message } of work.photos.refused) notes.push(`"${name}" was left out: ${message}`);
+  const found = work.photos === null ? [] : photosFoundBySpecimen(work.photos.files, tally.wanted, tally.kept);
+  const wanted = [...tally.wanted, ...found];
+  for (const { name, message } of work.photos?.refused ?? []) notes.push(`"${name}" was left out: ${message}`);
+  if (found.length > 0) {
+    notes.push(
+      found.length === 1
+        ? 'One photo was matched by the specimen id in its file name.'
+        : `${found.length} photos were matched by the specimen id in their file names.`,
+    );
+  }
+  if (work.photos !== null && records !== null && !dryRun && wanted.length > 0) {
     const done = await importPhotos({
-      wanted: tally.wanted,
+      wanted,
       source: work.photos,
       records,
       pool: work.pool,
@@ -210,7 +221,7 @@ export async function importLog(work: ImportLog): Promise<ImportSummary> {
     updated: tally.updated,
     unchanged: tally.unchanged,
     refused: tally.refused,
-    refusals: tally.refusals,
+    refusals: tally.refusals.sort((a, b) => a.line - b.line),
     readingsAdded: tally.readingsAdded,
     photosQueued: photos.queued,
     photosMeasured: photos.measured,
