@@ -1,11 +1,8 @@
-import { handOfPlaneAngle } from '../angle.ts';
 import { LabError } from '../errors.ts';
 import type { BudgetLine, PlaneReading, PointPx, Warning } from '../records/reading.ts';
 import { cameraDistance, measureTrace } from './budget.ts';
+import { planeReadingOf } from './planeReading.ts';
 import { frameFromAxis, type PhotoPoint, toPhoto } from './unroll.ts';
-
-/** Coverage factor of every expanded uncertainty stated here (GUM 6.3.3: about 95 %). */
-export const COVERAGE_FACTOR = 2;
 
 export interface ByHandInput {
   /** Two points of the axis, px of the upright photo. */
@@ -93,7 +90,7 @@ export function measureByHand(input: ByHandInput): ByHandMeasurement {
       value: input.tracePx.length,
     });
   }
-  const { fit, budget, combinedStandardUncertaintyDeg } = measured;
+  const { fit } = measured;
   const warnings: Warning[] = [];
   if (input.tracePx.length < 5) {
     warnings.push({
@@ -102,21 +99,7 @@ export function measureByHand(input: ByHandInput): ByHandMeasurement {
     });
   }
   return {
-    planeAngleDeg: fit.planeAngleDeg,
-    expandedUncertaintyDeg: COVERAGE_FACTOR * combinedStandardUncertaintyDeg,
-    coverageFactor: COVERAGE_FACTOR,
-    hand: handOfPlaneAngle(fit.planeAngleDeg),
-    shape: fit.shape,
-    planeTiltDeg: fit.planeTiltDeg,
-    planeTiltExpandedUncertaintyDeg:
-      fit.planeTiltStandardUncertaintyDeg === null ? null : COVERAGE_FACTOR * fit.planeTiltStandardUncertaintyDeg,
-    segments: fit.segments.map((s) => ({
-      planeAngleDeg: s.planeAngleDeg,
-      share: s.share,
-      expandedUncertaintyDeg: COVERAGE_FACTOR * s.standardUncertaintyDeg,
-      ...(s.closingStep ? { closingStep: true } : {}),
-    })),
-    budget: [...budget],
+    ...planeReadingOf(measured),
     warnings,
     fittedPx: fit.curve.map((p): PointPx => {
       const q = toPhoto(frame, p);

@@ -91,8 +91,13 @@ export function readAsHalf(half: HalfCandidate, end: EndOfHalf): PhotoReading | 
     rim: Math.log(clipped(rim.contrast, 0.5, 40)),
     clear: rim.clearShare,
     sawn: square(fit),
-    otherCut: other === undefined || other.cutByPhoto ? 1 : 0,
-    otherSawn: other?.rim == null ? 0 : square(otherFit) * Math.min(1, other.rim.clearShare),
+    // The other end runs out of the photo or is sawn: then this one is the break.
+    other:
+      other === undefined || other.cutByPhoto
+        ? 1
+        : other.rim === null
+          ? 0
+          : square(otherFit) * Math.min(1, other.rim.clearShare),
     isPart: half.candidate.isPart ? 1 : 0,
     gap: trace === null ? 0 : clipped(-Math.log(trace.costPerRow), 0, 3),
     sides:

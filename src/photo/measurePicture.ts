@@ -1,12 +1,12 @@
-import { handOfPlaneAngle, planeAngleDistanceDeg } from '../angle.ts';
+import { planeAngleDistanceDeg } from '../angle.ts';
 import type { BudgetLine, NOT_MEASURED_CODES, PlaneReading, PointPx, Warning } from '../records/reading.ts';
 import { cameraDistance, type FrameUncertainty, measureTrace, type TraceMeasurement } from './budget.ts';
-import { COVERAGE_FACTOR } from './byHand.ts';
 import { type Candidate, findCandidates, findHalves, levelsOf } from './candidates.ts';
 import { centreOfGap } from './centreOfGap.ts';
 import { acceptance, type PhotoReading, readAsHalf, readAsPair } from './choice.ts';
 import { type PairTrace, SEARCHED_HALF_WIDTH, searchPairTrace } from './pairTrace.ts';
 import type { Picture } from './picture.ts';
+import { planeReadingOf } from './planeReading.ts';
 import { LEAST_PX_ACROSS, type PhotoQuality, qualityOf, WANTED_PX_ACROSS } from './quality.ts';
 import { refineFrame } from './refineFrame.ts';
 import { refineRim } from './rimTrace.ts';
@@ -333,7 +333,6 @@ const TRACE_POINTS = 160;
 
 function describe(picture: Picture, result: Measured, quality: PhotoQuality): PictureMeasurement {
   const { frame, measured, reading, points } = result;
-  const { fit } = measured;
   const flat: SpecimenFrame = { ...frame, cameraDistanceRadii: Number.POSITIVE_INFINITY };
   const every = Math.max(1, Math.ceil(points.length / TRACE_POINTS));
   const edge = (side: 1 | -1): [PointPx, PointPx] => [
@@ -343,26 +342,12 @@ function describe(picture: Picture, result: Measured, quality: PhotoQuality): Pi
   return {
     outcome: 'measured',
     view: reading.view,
-    planeAngleDeg: fit.planeAngleDeg,
-    expandedUncertaintyDeg: COVERAGE_FACTOR * measured.combinedStandardUncertaintyDeg,
-    coverageFactor: COVERAGE_FACTOR,
-    hand: handOfPlaneAngle(fit.planeAngleDeg),
-    shape: fit.shape,
-    planeTiltDeg: fit.planeTiltDeg,
-    planeTiltExpandedUncertaintyDeg:
-      fit.planeTiltStandardUncertaintyDeg === null ? null : COVERAGE_FACTOR * fit.planeTiltStandardUncertaintyDeg,
-    segments: fit.segments.map((s) => ({
-      planeAngleDeg: s.planeAngleDeg,
-      share: s.share,
-      expandedUncertaintyDeg: COVERAGE_FACTOR * s.standardUncertaintyDeg,
-      ...(s.closingStep ? { closingStep: true } : {}),
-    })),
+    ...planeReadingOf(measured),
     ...placeOf(picture, frame, reading.candidate),
     tracePx: points
       .filter((_, i) => i % every === 0 || i === points.length - 1)
       .map((p) => inPhoto(toPhoto(flat, p), picture.scale)),
     edgesPx: [edge(1), edge(-1)],
-    budget: [...measured.budget],
     quality: { ...quality },
     warnings: warningsOf(quality),
   };
