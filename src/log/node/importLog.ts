@@ -171,13 +171,13 @@ export async function importLog(work: ImportLog): Promise<ImportSummary> {
       }
       tally[answer.outcome] += 1;
       if (answer.readingAdded) tally.readingsAdded += 1;
-      const specimen: KeptSpecimen = {
+      const specimen = {
         line: row.line,
         specimenId: entry.test.specimenId,
         testId: answer.testId,
         diameterMm: 'diameterMm' in entry.test.geometry ? entry.test.geometry.diameterMm : null,
       };
-      if (work.photos !== null) tally.kept.push(specimen);
+      if (work.photos !== null) tally.kept.push({ ...specimen, namesPhotos: photoNames.length > 0 });
       for (const name of photoNames) tally.wanted.push({ ...specimen, name });
     });
     work.onProgress?.({ phase: 'rows', done: tally.rows, total: null });
@@ -225,7 +225,7 @@ export async function importLog(work: ImportLog): Promise<ImportSummary> {
     readingsAdded: tally.readingsAdded,
     photosQueued: photos.queued,
     photosMeasured: photos.measured,
-    photoProblems: tally.photoProblems,
+    photoProblems: tally.photoProblems.sort((a, b) => a.line - b.line),
     dryRun,
     stoppedAtLine: tally.stoppedAtLine,
     log: plan.reading,

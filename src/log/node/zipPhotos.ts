@@ -2,6 +2,7 @@ import { createWriteStream } from 'node:fs';
 import { basename } from 'node:path';
 import { Transform } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
+import { crc32 } from 'node:zlib';
 import { type Entry, getFileNameLowLevel, openPromise, validateFileName, type ZipFile } from 'yauzl';
 import { LabError } from '../../errors.ts';
 import {
@@ -11,7 +12,6 @@ import {
   notPhotos,
   type PhotoFile,
   type PhotoSource,
-  tooLarge,
 } from './photoSource.ts';
 
 /** A photo hardly shrinks in an archive; an entry that grows more than this when unpacked is made to fill the disk. */
@@ -34,28 +34,38 @@ function whyLeftOut(entry: Entry, innerPath: string): string | null {
     : null;
 }
 
-/** Stops a stream that brings more bytes than it said it would. */
-function atMost(bytes: number, name: string): Transform {
+/** Passes bytes on only while they are what the archive says they are: no more of them, no fewer, with the right checksum. */
+function asStated({ uncompressedSize, crc32: checksum }: Entry, name: string): Transform {
   let seen = 0;
+  let crc = 0;
   return new Transform({
     transform(chunk: Buffer, _encoding, done) {
       seen += chunk.length;
-      if (seen > bytes) done(tooLarge(name, seen));
+      crc = crc32(chunk, crc);
+      if (seen > uncompressedSize) done(damaged(name, `more than the ${uncompressedSize} bytes it claims`));
       else done(null, chunk);
+    },
+    flush(done) {
+      if (seen < uncompressedSize) done(damaged(name, `${seen} bytes instead of the ${uncompressedSize} it claims`));
+      else if (crc !== checksum) done(damaged(name, 'bytes with a wrong checksum'));
+      else done();
     },
   });
 }
 
+const damaged = (name: string, why: string): LabError =>
+  new LabError('not-a-photo', `photo must unpack whole from the archive, got "${name}" with ${why}`, {
+    input: 'photo',
+    value: name,
+  });
+
 async function copyEntry(zip: ZipFile, entry: Entry, name: string, to: string): Promise<void> {
   try {
     const stream = await zip.openReadStreamPromise(entry);
-    await pipeline(stream, atMost(entry.uncompressedSize, name), createWriteStream(to, { flags: 'wx' }));
+    await pipeline(stream, asStated(entry, name), createWriteStream(to, { flags: 'wx' }));
   } catch (error) {
     if (error instanceof LabError) throw error;
-    throw new LabError('not-a-photo', `photo must unpack from the archive, got "${name}": ${reasonOf(error)}`, {
-      input: 'photo',
-      value: name,
-    });
+    throw damaged(name, reasonOf(error));
   }
 }
 
@@ -101,7 +111,8 @@ export async function openZipPhotos(path: string): Promise<PhotoSource> {
     autoClose: false,
     // Names are looked at one by one (see `whyLeftOut`): a bad one costs its entry, not the archive.
     decodeStrings: false,
-    validateEntrySizes: true,
+    // So are sizes and checksums (see `asStated`).
+    validateEntrySizes: false,
   }).catch((error: unknown) => {
     throw notPhotos(archive, reasonOf(error));
   });
