@@ -49,7 +49,8 @@ const NOT_A_NUMBER: ParsedNumber = { ok: false, why: 'not-a-number' };
 
 const plain = (text: string): ParsedNumber => {
   const value = PLAIN.test(text) ? Number(text) : Number.NaN;
-  return Number.isFinite(value) ? { ok: true, value } : NOT_A_NUMBER;
+  // No log means −0.
+  return Number.isFinite(value) ? { ok: true, value: value === 0 ? 0 : value } : NOT_A_NUMBER;
 };
 
 /**

@@ -24,6 +24,7 @@ export interface LogInspection {
 }
 
 const SAMPLE_BYTES = 256 * 1024;
+const ENOUGH_FOR_ENCODING = 4096;
 const DELIMITERS = [',', ';', '\t', '|'] as const;
 /** Title lines above the header row are passed over; a header further down is not looked for. */
 const HEADER_WITHIN_RECORDS = 20;
@@ -42,13 +43,12 @@ async function takeSample(source: LogSource): Promise<Sample> {
   let utf8: TextDecoder | null = new TextDecoder('utf-8', { fatal: true });
   let whole = true;
   for await (const chunk of source.open()) {
-    if (length < SAMPLE_BYTES) {
-      chunks.push(chunk);
-      encoding = encodingFromStart(length === 0 ? chunk.subarray(0, SAMPLE_BYTES) : joined(chunks), source.name);
-    } else {
-      whole = false;
-    }
+    const sampled = length < SAMPLE_BYTES;
+    if (sampled) chunks.push(chunk);
+    else whole = false;
     length += chunk.length;
+    // A few bytes, as a slow upload brings them, tell no pattern yet.
+    if (sampled && length >= ENOUGH_FOR_ENCODING) encoding = encodingFromStart(joined(chunks), source.name);
     if (encoding !== null && length >= SAMPLE_BYTES) {
       whole = false;
       break;
@@ -56,6 +56,7 @@ async function takeSample(source: LogSource): Promise<Sample> {
     if (utf8 && encoding === null && !decodes(utf8, chunk)) utf8 = null;
   }
   if (utf8 && encoding === null && !decodes(utf8, null)) utf8 = null;
+  if (length < ENOUGH_FOR_ENCODING) encoding = encodingFromStart(joined(chunks), source.name);
   return { head: joined(chunks), whole, encoding: encoding ?? (utf8 ? 'utf-8' : 'windows-1252') };
 }
 
