@@ -108,9 +108,13 @@ export function measureTrace(input: {
   const quick = fitWith(frame, tracePx, QUICK_POINTS);
   const change = (moved: SpecimenFrame): number => {
     const other = fitWith(moved, tracePx, QUICK_POINTS);
-    return other === null || quick === null || other.shape !== quick.shape
-      ? 0
-      : planeAngleDistanceDeg(other.planeAngleDeg, quick.planeAngleDeg);
+    if (other === null || quick === null || other.shape !== quick.shape) return 0;
+    // Of a mixed trace the same segment is compared, whichever of them governs.
+    return Math.min(
+      ...[other.planeAngleDeg, ...other.segments.map((s) => s.planeAngleDeg)].map((angle) =>
+        planeAngleDistanceDeg(angle, quick.planeAngleDeg),
+      ),
+    );
   };
   const larger = (a: SpecimenFrame, b: SpecimenFrame) => Math.max(change(a), change(b));
 

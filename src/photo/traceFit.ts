@@ -202,6 +202,9 @@ type PieceKind = 'flat' | 'inclined' | 'steep';
 const kindOf = (deg: number): PieceKind =>
   Math.abs(deg) > STEEP_DEG ? 'steep' : Math.abs(deg) < FLAT_DEG ? 'flat' : 'inclined';
 
+/** A piece with more than this share of the trace is the trace; what is left at its ends is a ragged edge. */
+const ALMOST_WHOLE = 0.86;
+
 /** A flat cut seen from its high or low side is an arch: three pieces and more whose slopes turn one way. */
 const ARCH_SCATTER = 0.06;
 const isArch = (pieces: readonly StraightPiece[]): boolean => {
@@ -310,7 +313,8 @@ export function fitTrace(
     const merged = criterion(sse, points.length, independent, 3 * pieces.length - 1);
     const flat = singles.find((fit) => fit.name === 'flat');
     const arch = flat !== undefined && flat.scatter < ARCH_SCATTER && isArch(pieces);
-    if (pieces.length > 1 && !arch && merged < bestSingle.score - PIECES_MARGIN) {
+    const almostWhole = pieces.some((p) => p.to - p.from + 1 > ALMOST_WHOLE * points.length);
+    if (pieces.length > 1 && !arch && !almostWhole && merged < bestSingle.score - PIECES_MARGIN) {
       const piecewise = describePieces(points, pieces, independentLimit);
       if (piecewise !== null) return piecewise;
     }
