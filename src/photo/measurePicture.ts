@@ -274,8 +274,10 @@ function edgeChoiceDeg(readings: readonly PhotoReading[], best: PhotoReading): n
   let weight = 0;
   let sum = 0;
   for (const { view, fit, value } of readings) {
-    if (view !== best.view || fit === null || fit.shape === 'mixed') continue;
-    const apart = planeAngleDistanceDeg(fit.planeAngleDeg, best.fit.planeAngleDeg);
+    // A trace of several segments has an angle only beside others of several segments.
+    if (view !== best.view || fit === null || (fit.shape === 'mixed') !== (best.fit.shape === 'mixed')) continue;
+    const own = best.fit.planeAngleDeg;
+    const apart = Math.min(...fit.segments.map((s) => planeAngleDistanceDeg(s.planeAngleDeg, own)));
     if (apart > SAME_TRACE_DEG) continue;
     const odds = Math.exp(value - best.value);
     weight += odds;
