@@ -103,11 +103,15 @@ function withTrailingUnit(header: string): Recognised | null {
   return null;
 }
 
+/** No header of a log is longer; what is, is text and is not looked through for names and units. */
+const LONGEST_HEADER_CHARS = 200;
+
 /** What a header of the file means, or null when it means nothing to the import. @throws LabError `unknown-unit` */
 export function recogniseHeader(
   header: string,
 ): { column: ColumnName; unit: string | null; unitAssumed: boolean } | null {
   const text = header.trim();
+  if (text.length > LONGEST_HEADER_CHARS) return null;
   const plain = NAMES.get(foldHeader(text));
   const found: Recognised | null = plain ? { ...plain, unit: null } : (withBracket(text) ?? withTrailingUnit(text));
   if (!found) return null;

@@ -8,7 +8,7 @@ export interface Refusal {
   readonly line: number;
   /** Canonical header; null when the row as a whole cannot be read. */
   readonly column: ColumnName | null;
-  /** The cell as the file has it. */
+  /** The cell as the file has it, cut after 200 characters. */
   readonly value: string;
   readonly code: ErrorCode;
   readonly message: string;

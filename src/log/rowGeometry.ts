@@ -1,7 +1,8 @@
 import type { SectionGeometry } from '../records/geometry.ts';
 import type { RowCells } from './rowCells.ts';
 
-type SectionName = SectionGeometry['section'];
+/** Sections a log can name: those its columns have dimensions for. */
+type SectionName = Extract<SectionGeometry['section'], 'solid-round' | 'hollow-round'>;
 
 /** Words for sections; folded to small letters without accents, spaces or hyphens. Common practice. */
 const SECTION_WORDS: Readonly<Record<SectionName, readonly string[]>> = {

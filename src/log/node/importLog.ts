@@ -59,8 +59,18 @@ class Tally {
 /** Lines of a log that state the same specimen and day as an earlier line. */
 const identityOf = (entry: LogEntry): string => `${entry.test.specimenId}\u0000${entry.test.testDate ?? ''}`;
 
+/** A list of refusals is read by people and held in memory: long cells are cut in it; the CSV of refused rows has all of them. */
+const LONGEST_VALUE_CHARS = 200;
+const LONGEST_MESSAGE_CHARS = 1000;
+const cut = (text: string, chars: number): string => (text.length > chars ? `${text.slice(0, chars)}…` : text);
+const listed = (problem: CellProblem): CellProblem => ({
+  ...problem,
+  value: cut(problem.value, LONGEST_VALUE_CHARS),
+  message: cut(problem.message, LONGEST_MESSAGE_CHARS),
+});
+
 const refusalOf = (line: number, problems: readonly CellProblem[]): Refusal => {
-  const [first, ...also] = problems as readonly [CellProblem, ...CellProblem[]];
+  const [first, ...also] = problems.map(listed) as [CellProblem, ...CellProblem[]];
   return { line, ...first, ...(also.length > 0 && { also }) };
 };
 
@@ -85,7 +95,7 @@ function misfit(row: LogRow, headers: number): string | null {
 const misfitRefusal = (row: LogRow, message: string): Refusal => ({
   line: row.line,
   column: null,
-  value: row.raw.slice(0, 200),
+  value: cut(row.raw, LONGEST_VALUE_CHARS),
   code: 'invalid-request',
   message,
 });
