@@ -33,7 +33,7 @@ function logCells(test: TestRow): Record<(typeof CANONICAL_HEADERS)[number], Cel
     material: test.material,
     heat: test.heat,
     section: geometry.section,
-    diameter_mm: geometry.diameterMm,
+    diameter_mm: 'diameterMm' in geometry ? geometry.diameterMm : null,
     bore_mm: 'boreMm' in geometry ? geometry.boreMm : null,
     gauge_length_mm: test.gaugeLengthMm,
     torque_max_Nm: test.torqueMaxNm,

@@ -1,4 +1,5 @@
 import { LabError } from '../../src/errors.ts';
+import { isRound } from '../../src/mechanics/sections/registry.ts';
 import { ENGINE_VERSION, type MeasurePool } from '../../src/photo/measurement.ts';
 import type { PhotoMeasurement } from '../../src/records/reading.ts';
 import type { LaboratoryStore } from '../store/laboratoryStore.ts';
@@ -70,8 +71,8 @@ export function startMeasuring({ store, pool, lanes, clock = Date.now, onFault }
 
   const measure = async (due: DueMeasurement): Promise<PhotoMeasurement> => {
     const test = await store.readTest(due.testId);
-    const { diameterMm } = test.geometry;
-    return pool.measure({ path: await store.photoPath(due.photoSha256), options: { diameterMm } });
+    const options = isRound(test.geometry) ? { diameterMm: test.geometry.diameterMm } : {};
+    return pool.measure({ path: await store.photoPath(due.photoSha256), options });
   };
 
   /** Whatever goes wrong with one photo is an answer about this photo; the queue goes on. */

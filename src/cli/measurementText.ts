@@ -1,4 +1,5 @@
 import { degToRad } from '../angle.ts';
+import { isRound } from '../mechanics/sections/registry.ts';
 import type { TestLoads } from '../mechanics/surfaceStress.ts';
 import type { PhotoMeasured } from '../records/reading.ts';
 import { assessReading } from '../verdict/assessReading.ts';
@@ -30,12 +31,12 @@ function pitchLines({ shape, planeAngleDeg }: PhotoMeasured, diameterMm: number 
   ];
 }
 
+const outsideDiameterMm = ({ geometry }: TestLoads): number | undefined =>
+  geometry && isRound(geometry) ? geometry.diameterMm : undefined;
+
 function meaningLines(measured: PhotoMeasured, loads: TestLoads, colours: Colours): string[] {
   const { statement } = assessReading(loads, measured);
-  return [
-    ...pitchLines(measured, loads.geometry?.diameterMm),
-    ...(statement ? statementLines(statement, colours) : []),
-  ];
+  return [...pitchLines(measured, outsideDiameterMm(loads)), ...(statement ? statementLines(statement, colours) : [])];
 }
 
 /**

@@ -10,5 +10,17 @@ export function sectionText(geometry: SectionGeometry, system: UnitSystem): stri
       return `⌀ ${length(geometry.diameterMm)} ${unit}`;
     case 'hollow-round':
       return `⌀ ${length(geometry.diameterMm)} / ${length(geometry.boreMm)} ${unit}`;
+    case 'rectangle':
+      return `${length(geometry.widthMm)} × ${length(geometry.heightMm)} ${unit}`;
+    case 'square':
+      return `□ ${length(geometry.sideMm)} ${unit}`;
+    case 'ellipse':
+      return `⬭ ${length(geometry.majorAxisMm)} × ${length(geometry.minorAxisMm)} ${unit}`;
+    case 'equilateral-triangle':
+      return `△ ${length(geometry.sideMm)} ${unit}`;
+    case 'hexagon':
+      return `⬡ ${length(geometry.acrossFlatsMm)} ${unit}`;
+    case 'rectangular-tube':
+      return `${length(geometry.widthMm)} × ${length(geometry.heightMm)} / ${length(geometry.wallMm)} ${unit}`;
   }
 }
