@@ -68,4 +68,13 @@ export interface LogImport {
   readonly refusals: readonly Refusal[];
   readonly photosQueued: number;
   readonly photosMeasured: number;
+  /** Photos that rows name and that could not be kept. */
+  readonly photoProblems: readonly {
+    readonly line: number;
+    readonly specimenId: string;
+    readonly photo: string;
+    readonly message: string;
+  }[];
+  /** What was assumed or left out. */
+  readonly notes: readonly string[];
 }

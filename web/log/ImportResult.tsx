@@ -29,12 +29,32 @@ export function ImportResult({ result, dryRun }: { readonly result: LogImport; r
         ))}
       </dl>
       {result.refusals.length === 0 ? <p>{IMPORT.nothingRefused}</p> : <Refusals result={result} dryRun={dryRun} />}
+      {result.photoProblems.length > 0 && (
+        <Sentences
+          title={IMPORT.photoProblemsTitle(result.photoProblems.length)}
+          sentences={result.photoProblems.map((p) => IMPORT.photoProblem(p.line, p.specimenId, p.photo, p.message))}
+        />
+      )}
+      {result.notes.length > 0 && <Sentences title={IMPORT.notesTitle} sentences={result.notes} />}
       {!dryRun && (
         <Link to={{ place: 'tests' }} className="button">
           {IMPORT.toTests}
         </Link>
       )}
     </section>
+  );
+}
+
+function Sentences({ title, sentences }: { readonly title: string; readonly sentences: readonly string[] }) {
+  return (
+    <div className="sentences">
+      <h3>{title}</h3>
+      <ul>
+        {sentences.map((sentence) => (
+          <li key={sentence}>{sentence}</li>
+        ))}
+      </ul>
+    </div>
   );
 }
 

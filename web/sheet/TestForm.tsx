@@ -44,10 +44,10 @@ export function TestForm({ draft, messages, onDraft }: TestFormProps) {
       <Choice
         label={TEST_FORM.section}
         value={draft.section}
-        options={SECTION_NAMES.map((name) => [name, SECTION_LABEL[name]])}
+        options={SECTION_NAMES.map((name) => [name, SECTION_LABEL[name] ?? name])}
         onChange={(section) => onDraft({ ...draft, section })}
       />
-      {SECTION_DIMENSIONS[draft.section].map((name) => number(name, true))}
+      {(SECTION_DIMENSIONS[draft.section] ?? []).map((name) => number(name, true))}
       {number('torqueMaxNm')}
       <Choice
         label={TEST_FORM.torqueDirection}

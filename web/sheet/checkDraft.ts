@@ -45,7 +45,7 @@ export function checkDraft(draft: TestDraft, system: UnitSystem): CheckedDraft {
 function candidateOf(draft: TestDraft): Record<string, unknown> {
   const { texts, numbers, section } = draft;
   const geometry: Record<string, unknown> = { section };
-  for (const name of SECTION_DIMENSIONS[section]) geometry[name] = numbers[name].inside ?? undefined;
+  for (const name of SECTION_DIMENSIONS[section] ?? []) geometry[name] = numbers[name].inside ?? undefined;
   return {
     specimenId: texts.specimenId,
     testDate: texts.testDate === '' ? null : texts.testDate,
@@ -103,6 +103,6 @@ const orNull = (text: string): string | null => (text.trim() === '' ? null : tex
 
 /** Fields the form shows now: dimensions of another section are kept, but not asked. */
 const numbersAsked = (draft: TestDraft): readonly NumberFieldName[] => {
-  const asked: readonly NumberFieldName[] = SECTION_DIMENSIONS[draft.section];
+  const asked: readonly NumberFieldName[] = SECTION_DIMENSIONS[draft.section] ?? [];
   return NUMBER_FIELD_NAMES.filter((name) => asked.includes(name) || !isDimension(name));
 };

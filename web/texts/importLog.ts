@@ -33,6 +33,10 @@ export const IMPORT = {
   value: 'Value',
   reason: 'Reason',
   nothingRefused: 'Every row was taken over.',
+  photoProblemsTitle: (count: number) => `${count} ${count === 1 ? 'photo was' : 'photos were'} not taken over`,
+  photoProblem: (line: number, specimenId: string, photo: string, message: string) =>
+    `Line ${line}, ${specimenId}, “${photo}”: ${message}`,
+  notesTitle: 'Assumed or left out',
   toTests: 'Show the tests',
   headersTitle: 'Headers it understands',
   headers:

@@ -3,6 +3,13 @@ import type { NumberFieldName, SectionName, TextFieldName } from '../sheet/testF
 export const NUMBER_LABEL: Readonly<Record<NumberFieldName, string>> = {
   diameterMm: 'Outside diameter',
   boreMm: 'Bore',
+  widthMm: 'Width',
+  heightMm: 'Height',
+  sideMm: 'Side',
+  majorAxisMm: 'Longer axis',
+  minorAxisMm: 'Shorter axis',
+  acrossFlatsMm: 'Across flats',
+  wallMm: 'Wall thickness',
   gaugeLengthMm: 'Gauge length',
   torqueMaxNm: 'Largest torque',
   twistFractureDeg: 'Twist at fracture',
@@ -24,9 +31,15 @@ export const TEXT_LABEL: Readonly<Record<TextFieldName, string>> = {
   remarks: 'Remarks',
 };
 
-export const SECTION_LABEL: Readonly<Record<SectionName, string>> = {
+export const SECTION_LABEL: Readonly<Record<string, string>> = {
   'solid-round': 'Solid round',
   'hollow-round': 'Tube, round',
+  rectangle: 'Rectangle',
+  square: 'Square',
+  ellipse: 'Ellipse',
+  'equilateral-triangle': 'Equilateral triangle',
+  hexagon: 'Hexagon',
+  'rectangular-tube': 'Tube, rectangular',
 };
 
 export const TEST_FORM = {
