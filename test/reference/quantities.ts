@@ -11,11 +11,29 @@ import {
 import type { SectionGeometry } from '../../src/records/geometry.ts';
 import type { ReferenceInputs } from './inputs.ts';
 
-/** Geometry of a row: `D` outside diameter, `bore` bore. */
+/** Geometry of a row: `section` with its dimensions, or `D` outside diameter and `bore`. */
 export function geometryOf(inputs: ReferenceInputs): SectionGeometry {
-  const diameterMm = inputs.length('D');
-  if (!inputs.has('bore')) return { section: 'solid-round', diameterMm };
-  return { section: 'hollow-round', diameterMm, boreMm: inputs.length('bore') };
+  const mm = (name: string) => inputs.length(name);
+  switch (inputs.has('section') ? inputs.text('section') : 'round') {
+    case 'rectangle':
+      return { section: 'rectangle', widthMm: mm('a'), heightMm: mm('b') };
+    case 'square':
+      return { section: 'square', sideMm: mm('s') };
+    case 'ellipse':
+      return { section: 'ellipse', majorAxisMm: mm('major'), minorAxisMm: mm('minor') };
+    case 'triangle':
+      return { section: 'equilateral-triangle', sideMm: mm('s') };
+    case 'hexagon':
+      return { section: 'hexagon', acrossFlatsMm: mm('flats') };
+    case 'rectangular tube':
+      return { section: 'rectangular-tube', widthMm: mm('a'), heightMm: mm('b'), wallMm: mm('t') };
+    default: {
+      const diameterMm = mm('D');
+      return inputs.has('bore')
+        ? { section: 'hollow-round', diameterMm, boreMm: mm('bore') }
+        : { section: 'solid-round', diameterMm };
+    }
+  }
 }
 
 /** Stress state of a row: given directly, or from torque and axial force on a round bar. */

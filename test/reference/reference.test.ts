@@ -3,7 +3,8 @@ import { parse } from 'csv-parse/sync';
 import { afterAll, describe, expect, test } from 'vitest';
 import { EXPECTED_UNITS } from './expectedUnits.ts';
 import { plainNumber, readInputs } from './inputs.ts';
-import { QUANTITIES } from './quantities.ts';
+import { MECHANICS_QUANTITIES } from './mechanicsQuantities.ts';
+import { QUANTITIES as PLANE_QUANTITIES } from './quantities.ts';
 
 interface Row {
   readonly id: string;
@@ -15,6 +16,7 @@ interface Row {
   readonly kind: string;
   readonly source: string;
 }
+const QUANTITIES = { ...PLANE_QUANTITIES, ...MECHANICS_QUANTITIES };
 const KINDS = ['published', 'memory', 'library', 'formula'] as const;
 
 const folder = new URL('.', import.meta.url);
@@ -50,8 +52,9 @@ test('every row has its own id', () => {
   expect(new Set(all.map((row) => row.id)).size).toBe(all.length);
 });
 
-test('there are at least 40 rows', () => {
-  expect(all.length).toBeGreaterThanOrEqual(40);
+test('there are at least 120 rows, 20 of them against reference libraries', () => {
+  expect(all.length).toBeGreaterThanOrEqual(120);
+  expect(all.filter((row) => row.kind === 'library').length).toBeGreaterThanOrEqual(20);
 });
 
 afterAll(() => {
