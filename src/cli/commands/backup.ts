@@ -19,7 +19,7 @@ export function backupCommand({ ports, output }: CommandContext): Command {
     .addOption(dataDirOption(ports))
     .addHelpText(
       'after',
-      '\nEvery file in the archive has its checksum. While the service runs, fetch the same archive from it:\n/api/v1/exports/backup.tar',
+      '\nExample:\n  breakplane backup laboratory.tar --data /srv/torsion-lab\n\nEvery file in the archive has its checksum. While the service runs, fetch the same archive from it:\n/api/v1/exports/backup.tar',
     )
     .action(async (archive: string, flags: { data: string }) => {
       const { files, bytes } = await needed(ports.backup, 'backup').call(ports, flags.data, archive);
@@ -33,7 +33,10 @@ export function restoreCommand({ ports, output }: CommandContext): Command {
     .description('Restore an archive of "backup" into an empty data folder')
     .argument('<archive>', 'archive to restore')
     .addOption(dataDirOption(ports))
-    .addHelpText('after', '\nEvery file is held against its checksum; the folder appears whole or not at all.')
+    .addHelpText(
+      'after',
+      '\nExample:\n  breakplane restore laboratory.tar --data /srv/torsion-lab-restored\n\nEvery file is held against its checksum; the folder appears whole or not at all.',
+    )
     .action(async (archive: string, flags: { data: string }) => {
       const { files, bytes } = await needed(ports.restore, 'restore').call(ports, archive, flags.data);
       output.line(`${files} files, ${shownSize(bytes)}, all checksums right → ${flags.data}`);

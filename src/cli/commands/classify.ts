@@ -71,6 +71,13 @@ function assess(flags: ClassifyFlags, loads: TestLoads): Assessment {
       { input: '--angle-uncertainty' },
     );
   }
+  if (!(expandedUncertaintyDeg >= 0)) {
+    throw new LabError(
+      'out-of-range',
+      `--angle-uncertainty must be an expanded uncertainty ≥ 0 deg, got ${flags.angleUncertainty}`,
+      { input: '--angle-uncertainty', value: flags.angleUncertainty },
+    );
+  }
   const coverageFactor = numberOf('--coverage-factor', flags.coverageFactor);
   return classifyAngle({ ...loads, planeAngleDeg, expandedUncertaintyDeg, coverageFactor }, { rule });
 }
