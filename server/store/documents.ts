@@ -3,6 +3,17 @@ import type { Reading } from '../../src/records/reading.ts';
 import type { Test, TestInput } from '../../src/records/test.ts';
 import type { PhotoTable, ReadingTable, TestRecord } from './schema.ts';
 
+/** Fields that came later: left out where empty, so that the text of earlier tests stays as it was. */
+function furtherFields(input: TestInput): Partial<TestInput> {
+  const { bendingAzimuthDeg, internalPressureMPa, breakLocation, torsionHistory } = input;
+  return {
+    ...(bendingAzimuthDeg != null && { bendingAzimuthDeg }),
+    ...(internalPressureMPa != null && { internalPressureMPa }),
+    ...(breakLocation != null && { breakLocation }),
+    ...(torsionHistory != null && { torsionHistory }),
+  };
+}
+
 /** The fields of a test, in one fixed order, so that equal tests have equal text. */
 export function fieldsOf(input: TestInput): TestInput {
   const { geometry } = input;
@@ -23,6 +34,7 @@ export function fieldsOf(input: TestInput): TestInput {
     twistFractureDeg: input.twistFractureDeg,
     axialForceN: input.axialForceN,
     bendingMomentNm: input.bendingMomentNm,
+    ...furtherFields(input),
     operator: input.operator,
     remarks: input.remarks,
   };

@@ -4,6 +4,14 @@ import { SectionGeometry } from './geometry.ts';
 export const TorqueDirection = z.enum(['ccw', 'cw']);
 export type TorqueDirection = z.infer<typeof TorqueDirection>;
 
+/** Where the specimen broke; only inside the gauge length does the break speak of the nominal stress. */
+export const BreakLocation = z.enum(['gauge-length', 'outside-gauge-length', 'shoulder', 'notch', 'grip']);
+export type BreakLocation = z.infer<typeof BreakLocation>;
+
+/** How the torque came on: once to failure, to and fro, or many times. */
+export const TorsionHistory = z.enum(['monotonic', 'reversed', 'cyclic']);
+export type TorsionHistory = z.infer<typeof TorsionHistory>;
+
 const optionalText = (max: number) => z.string().trim().max(max).nullable().default(null);
 
 /** What a laboratory enters for one specimen twisted to failure. */
@@ -25,6 +33,22 @@ export const TestInput = z.object({
   twistFractureDeg: z.number().nonnegative().max(36_000_000).nullable().default(null),
   axialForceN: z.number().min(-1e9).max(1e9).nullable().default(null).describe('tension positive'),
   bendingMomentNm: z.number().min(-1e7).max(1e7).nullable().default(null),
+  bendingAzimuthDeg: z
+    .number()
+    .min(-360)
+    .max(360)
+    .nullable()
+    .optional()
+    .describe('angle around the axis from the fibre the bending moment stretches most to the place looked at, degrees'),
+  internalPressureMPa: z
+    .number()
+    .min(0)
+    .max(10_000)
+    .nullable()
+    .optional()
+    .describe('pressure inside a round tube with closed ends, MPa'),
+  breakLocation: BreakLocation.nullable().optional().describe('where the specimen broke'),
+  torsionHistory: TorsionHistory.nullable().optional().describe('how the torque came on'),
   operator: optionalText(200),
   remarks: optionalText(20_000),
 });
