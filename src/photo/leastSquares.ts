@@ -137,10 +137,13 @@ export function fitLinear(
 /**
  * Integrated autocorrelation of residuals taken at equal steps: by how much fewer independent points
  * there are than points (n_eff = n / factor). Sum of the autocorrelation up to its first fall below
- * 0.1 (initial-sequence estimate; common practice in time-series analysis).
+ * 0.1 (initial-sequence estimate; common practice in time-series analysis), or, when that is larger, the factor of a
+ * first-order process with the lag-one correlation corrected for the fit: residuals of a fit with p parameters are less
+ * correlated than the errors, by about (p − 1)(1 + 2ρ)/n (Marriott & Pope 1954, Kendall 1954).
+ * @param parameters number of fitted parameters
  * @returns ≥ 1
  */
-export function correlationFactor(residuals: ArrayLike<number>): number {
+export function correlationFactor(residuals: ArrayLike<number>, parameters = 3): number {
   const n = residuals.length;
   if (n < 4) return 1;
   let mean = 0;
@@ -157,5 +160,9 @@ export function correlationFactor(residuals: ArrayLike<number>): number {
     if (rho < 0.1) break;
     factor += 2 * rho;
   }
-  return Math.max(1, factor);
+  let lagOne = 0;
+  for (let i = 1; i < n; i++) lagOne += ((residuals[i] as number) - mean) * ((residuals[i - 1] as number) - mean);
+  const lost = (parameters - 1) / n;
+  const corrected = Math.min(0.97, (lagOne / variance + lost) / Math.max(0.2, 1 - 2 * lost));
+  return Math.max(1, factor, (1 + corrected) / (1 - corrected));
 }

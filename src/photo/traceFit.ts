@@ -92,7 +92,8 @@ function fitSingle(
   });
   if (fit === null) return null;
   const [c, a, b] = fit.coefficients as [number, number, number];
-  const scaled = (sigma * sigma * points.length) / independent;
+  // Three parameters are fitted: that many independent points say nothing of the scatter.
+  const scaled = (sigma * sigma * points.length) / Math.max(1, independent - 3);
   const ua = Math.sqrt(Math.max(0, (fit.inverseNormal[1]?.[1] ?? 0) * scaled));
   const ub = Math.sqrt(Math.max(0, (fit.inverseNormal[2]?.[2] ?? 0) * scaled));
   const slope = name === 'line' ? a : a * FLAT_CUT_MEAN_SLOPE;
