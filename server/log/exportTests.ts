@@ -27,14 +27,22 @@ type Cell = string | number | null;
 /** What a row of a test log says of a test, under the canonical headers; `angle_deg` is left to the columns behind them. */
 function logCells(test: TestRow): Record<(typeof CANONICAL_HEADERS)[number], Cell> {
   const { geometry } = test;
+  const dimensions: Readonly<Record<string, string | number>> = geometry;
   return {
     specimen_id: test.specimenId,
     test_date: test.testDate,
     material: test.material,
     heat: test.heat,
     section: geometry.section,
-    diameter_mm: 'diameterMm' in geometry ? geometry.diameterMm : null,
-    bore_mm: 'boreMm' in geometry ? geometry.boreMm : null,
+    diameter_mm: dimensions.diameterMm ?? null,
+    bore_mm: dimensions.boreMm ?? null,
+    side_mm: dimensions.sideMm ?? null,
+    width_mm: dimensions.widthMm ?? null,
+    height_mm: dimensions.heightMm ?? null,
+    wall_mm: dimensions.wallMm ?? null,
+    major_axis_mm: dimensions.majorAxisMm ?? null,
+    minor_axis_mm: dimensions.minorAxisMm ?? null,
+    across_flats_mm: dimensions.acrossFlatsMm ?? null,
     gauge_length_mm: test.gaugeLengthMm,
     torque_max_Nm: test.torqueMaxNm,
     torque_direction: test.torqueDirection,

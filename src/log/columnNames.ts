@@ -70,7 +70,6 @@ export const LOG_COLUMNS = [
     `diameter, dia, d, d0, ø, ⌀, od, outside diameter, outer diameter, gauge diameter, gage diameter, Durchmesser, Außendurchmesser,
      diamètre, diamètre extérieur, diámetro, diámetro exterior, diametro, diametro esterno, diâmetro, diâmetro externo, średnica,
      ytterdiameter, 直径, 外径`,
-    true,
   ),
   column(
     'bore_mm',
@@ -78,6 +77,44 @@ export const LOG_COLUMNS = [
     'length',
     `bore, bore diameter, inside diameter, inner diameter, Innendurchmesser, Bohrung, alésage, diamètre intérieur, diámetro interior,
      diametro interno, diâmetro interno, średnica wewnętrzna, innerdiameter, 内径`,
+  ),
+  column(
+    'side_mm',
+    'side',
+    'length',
+    'side, side length, edge, Kantenlänge, Seitenlänge, côté, lado, lato, bok, 边长, 一辺',
+  ),
+  column(
+    'width_mm',
+    'width',
+    'length',
+    'Breite, largeur, ancho, anchura, larghezza, largura, szerokość, bredd, 宽度, 幅',
+  ),
+  column('height_mm', 'height', 'length', 'height, Höhe, hauteur, altura, altezza, wysokość, höjd, 高度, 高さ'),
+  column(
+    'wall_mm',
+    'wall',
+    'length',
+    `wall, wall thickness, Wanddicke, Wandstärke, épaisseur de paroi, espesor de pared, spessore parete, espessura da parede,
+     grubość ścianki, godstjocklek, 壁厚, 肉厚`,
+  ),
+  column(
+    'major_axis_mm',
+    'major axis',
+    'length',
+    'major axis, große Achse, grand axe, eje mayor, asse maggiore, eixo maior, 长轴, 長径',
+  ),
+  column(
+    'minor_axis_mm',
+    'minor axis',
+    'length',
+    'minor axis, kleine Achse, petit axe, eje menor, asse minore, eixo menor, 短轴, 短径',
+  ),
+  column(
+    'across_flats_mm',
+    'distance across flats',
+    'length',
+    'across flats, width across flats, distance across flats, Schlüsselweite, sur plats, entre caras, chiave, 对边, 二面幅',
   ),
   column(
     'gauge_length_mm',

@@ -1,6 +1,7 @@
 import { LabError } from '../errors.ts';
 import { INSIDE_UNIT, parseUnit } from '../units.ts';
 import { type ColumnName, LOG_COLUMNS, type LogColumn, REASON_HEADERS } from './columnNames.ts';
+import { DIMENSION_COLUMNS } from './rowGeometry.ts';
 
 /** Where one column of the log stands in this file, and in which unit its cells are. */
 export interface MappedColumn {
@@ -160,6 +161,15 @@ function mapByHand(index: number, header: string, hand: HandMapping): MappedColu
   };
 }
 
+/** Headers as a message shows them. */
+function headersShown(headers: readonly string[]): string {
+  const text = headers
+    .map((header) => header.trim())
+    .filter(Boolean)
+    .join(', ');
+  return text.length > 500 ? `${text.slice(0, 500)}…` : text || 'none';
+}
+
 /**
  * Finds the log's columns in a header row.
  * @throws LabError `not-a-log` when a required column is missing or two headers mean the same column; `unknown-unit`
@@ -185,12 +195,15 @@ export function mapColumns(headers: readonly string[], byHand: readonly HandMapp
       );
     }
   }
-  const missing = LOG_COLUMNS.filter((c) => c.required && !columns.some((found) => found.column === c.name));
+  const stands = (name: ColumnName): boolean => columns.some((found) => found.column === name);
+  const missing = LOG_COLUMNS.filter((c) => c.required && !stands(c.name)).map((c) => c.name);
+  // The usual dimension is asked for; any other one tells the section as well.
+  if (!DIMENSION_COLUMNS.some(stands)) missing.push('diameter_mm');
   if (missing.length > 0) {
     throw new LabError(
       'not-a-log',
-      `log must have the columns ${missing.map((c) => c.name).join(' and ')} (or another name of them), got the headers: ${headers.map((h) => h.trim()).join(', ') || 'none'}`,
-      { input: missing[0]?.name ?? 'header', value: headers.join(',') },
+      `log must have the columns ${missing.join(' and ')} (or another name of them), got the headers: ${headersShown(headers)}`,
+      { input: missing[0] ?? 'header', value: headersShown(headers) },
     );
   }
   return { columns, ignoredHeaders, width: headers.length };

@@ -16,6 +16,13 @@ const COLUMN_OF: Readonly<Record<string, ColumnName>> = {
   'geometry.section': 'section',
   'geometry.diameterMm': 'diameter_mm',
   'geometry.boreMm': 'bore_mm',
+  'geometry.sideMm': 'side_mm',
+  'geometry.widthMm': 'width_mm',
+  'geometry.heightMm': 'height_mm',
+  'geometry.wallMm': 'wall_mm',
+  'geometry.majorAxisMm': 'major_axis_mm',
+  'geometry.minorAxisMm': 'minor_axis_mm',
+  'geometry.acrossFlatsMm': 'across_flats_mm',
   gaugeLengthMm: 'gauge_length_mm',
   torqueMaxNm: 'torque_max_Nm',
   torqueDirection: 'torque_direction',
@@ -52,6 +59,10 @@ function problemOf(issue: Issue, row: RowCells): CellProblem {
   const value = row.original(column);
   if (issue.code === 'custom' && column === 'bore_mm') {
     const message = `bore must be smaller than the diameter of ${row.original('diameter_mm')}, got ${came(value, '')}`;
+    return { column, value, code: 'out-of-range', message };
+  }
+  if (issue.code === 'custom' && column === 'wall_mm') {
+    const message = `wall must be at most a tenth of the shorter width, where the thin-wall formula holds, got ${came(value, '')}`;
     return { column, value, code: 'out-of-range', message };
   }
   const code = issue.code === 'too_small' || issue.code === 'too_big' ? 'out-of-range' : 'invalid-request';
